@@ -1,0 +1,1 @@
+"""From a network to its equations and their solution."""

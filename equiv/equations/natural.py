@@ -1,0 +1,85 @@
+"""Natural frequencies in the right half plane: a steady state that is never reached.
+
+The laws are affine in s, so the system is G + s C. With C = E Fᵀ of full rank r and a shift σ,
+the r eigenvalues μ of Fᵀ (G + σ C)⁻¹ E give s = σ - 1/μ. A frequency counts only if two shifts
+agree on it, which no artefact of an infinite one does.
+
+Source: L. O. Chua, P.-M. Lin, Computer-Aided Analysis of Electronic Circuits (1975), chapter 10
+(from memory); the shift and the agreement of two shifts are our own.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from equiv.equations.dense import balance, matrix
+from equiv.equations.layout import Layout, Numbers
+from equiv.equations.system import System
+from equiv.network import Network
+
+LARGEST = 500
+"""Unknowns up to which natural frequencies are looked for."""
+_AGREEMENT = 1e-5
+_MARGIN = 1e-7
+_REACH = 1e4
+_FAR = 1e9
+"""The s (rad/s) that C is read off at: far out, so that G takes none of its digits."""
+_DYNAMIC = ("inductor", "capacitor")
+
+
+def unstable_frequencies(network: Network) -> list[complex]:
+    """Natural frequencies (rad/s) with a positive real part, the fastest growing first."""
+    if not any(e.kind in _DYNAMIC for e in network.elements.values()):
+        return []
+    layout = Layout(network)
+    still = System(layout, "nodal", 0.0)
+    if still.size > LARGEST or np.issubdtype(still.dtype, np.complexfloating):
+        return []
+    g = matrix(still)
+    c = (matrix(System(layout, "nodal", _FAR)) - g) / _FAR
+    found = [s for s in natural_frequencies(g, c) if s.real > _MARGIN * abs(s)]
+    return sorted(found, key=lambda s: -s.real)
+
+
+def natural_frequencies(g: Numbers, c: Numbers) -> list[complex]:
+    """The finite s (rad/s) for which G + s C is singular, s = 0 left out."""
+    found: list[complex] = []
+    for rate in _rates(g, c):
+        first, second = (_by_shift(g, c, rate * factor) for factor in (1.37, 0.61))
+        for s in first:
+            if not rate / _REACH < abs(s) < rate * _REACH:
+                continue
+            agrees = second.size and np.abs(second - s).min() <= _AGREEMENT * abs(s)
+            known = any(abs(s - other) <= _AGREEMENT * abs(s) for other in found)
+            if agrees and not known:
+                found.append(complex(s))
+    return found
+
+
+def _rates(g: Numbers, c: Numbers) -> Numbers:
+    """Shifts (rad/s) that cover the rates which the entries can make."""
+    conducts, stores = np.abs(g[g != 0]), np.abs(c[c != 0])
+    if not conducts.size or not stores.size:
+        return np.empty(0)
+    low = np.log10(conducts.min() / stores.max())
+    high = np.log10(conducts.max() / stores.min())
+    count = int(min(12, max(2, np.ceil((high - low) / 3) + 1)))
+    return np.logspace(low, high, count)
+
+
+def _by_shift(g: Numbers, c: Numbers, shift: float) -> Numbers:
+    """The finite s found from one shift."""
+    shifted = g + shift * c
+    rows, columns = balance(shifted)
+    shifted = shifted * rows[:, None] * columns
+    left, values, right = np.linalg.svd(shift * c * rows[:, None] * columns)
+    rank = int((values > 1e-12 * values.max(initial=0.0)).sum())
+    try:
+        inner = right[:rank] @ np.linalg.solve(shifted, left[:, :rank] * values[:rank])
+    except np.linalg.LinAlgError:
+        return np.empty(0)
+    if not np.isfinite(inner).all():
+        return np.empty(0)
+    mu = np.linalg.eigvals(inner)
+    mu = mu[np.abs(mu) > 1e-12]
+    return np.asarray(shift * (1 - 1 / mu))

@@ -1,0 +1,231 @@
+"""A network solved at one frequency: coefficients of its sources, and states of all of it."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable
+from functools import cached_property
+from typing import TypeVar
+
+import numpy as np
+
+from equiv.elements.element import Frequency
+from equiv.elements.quantity import Quantity
+from equiv.equations import words
+from equiv.equations.degenerate import LARGEST, Degenerate
+from equiv.equations.dense import DenseFactor
+from equiv.equations.factor import Factor, IllConditionedError, factorise
+from equiv.equations.graph import findings
+from equiv.equations.layout import Layout, Numbers
+from equiv.equations.system import Row, System
+from equiv.errors import Diagnostic, NoUniqueSolutionError
+from equiv.network import Network
+from equiv.units import Value, as_number
+
+T = TypeVar("T")
+
+
+def complex_frequency(frequency: Frequency) -> float | complex:
+    """s of the sinusoidal steady state: 0 at DC, so that DC stays in real numbers."""
+    return 1j * frequency.omega if frequency.omega else 0.0
+
+
+def source_values(network: Network, frequency: Frequency) -> Numbers:
+    """The rms value (V or A) of each source at a frequency; 0 for a source at another one."""
+    peak = math.sqrt(2) if network.phasors == "peak" else 1.0
+    values: list[float | complex] = []
+    for source in network.sources:
+        at = network.frequency_of(source)
+        here = math.isclose(at.omega, frequency.omega, rel_tol=1e-12)
+        scale = peak if at.omega else 1.0
+        values.append(as_number(_value(source.value)) / scale if here else 0.0)
+    return np.array(values) if values else np.empty(0)
+
+
+def _value(value: object) -> Value:
+    return value  # type: ignore[return-value]
+
+
+class State:
+    """One solution: node voltages over ground (V) and branch currents (A), phasors rms."""
+
+    def __init__(self, system: System, x: Numbers, u: Numbers) -> None:
+        self.system, self.x, self.u = system, x, u
+
+    @cached_property
+    def currents(self) -> Numbers:
+        """Every branch's current."""
+        return self.system.currents(self.x, self.u)
+
+    @cached_property
+    def voltages(self) -> Numbers:
+        """Every branch's voltage."""
+        return self.system.voltages(self.x)
+
+    def of(self, quantity: Quantity) -> complex:
+        """A voltage or current of this solution."""
+        row = self.system.row(quantity)
+        return complex(row.state @ self.x + row.source @ self.u)
+
+    def largest(self, what: str) -> float:
+        """The largest voltage (V) or current (A) of any branch: what rounding is measured by."""
+        values = self.voltages if what == "V" else self.currents
+        return float(np.abs(values).max(initial=0.0))
+
+    def balance(self) -> float:
+        """|Σ v·i*| / Σ|v·i*| over all branches (B. D. H. Tellegen, 1952); 0 where nothing flows."""
+        powers = self.voltages * np.conj(self.currents)
+        size = float(np.abs(powers).sum())
+        return float(abs(powers.sum())) / size if size else 0.0
+
+
+class Solver:
+    """The equations of a network at one frequency, factorised once.
+
+    `form` is "nodal" or "branch-current". Where the nodal form has lost its digits the
+    branch-current form takes over (`took_over`); where that is singular too, what is determined
+    all the same is still given, and `reasons` say in words what is wrong.
+
+    Errors: NoUniqueSolutionError where the network is singular and too large to decompose.
+    """
+
+    def __init__(self, network: Network, frequency: Frequency, form: str = "nodal") -> None:
+        self.network, self.frequency, self.form = network, frequency, form
+        self.layout = Layout(network)
+        self.s = complex_frequency(frequency)
+        self.u = source_values(network, frequency)
+        self.system = System(self.layout, form, self.s)
+        self.took_over = False
+        self.degenerate: Degenerate | None = None
+        self.reasons: tuple[str, ...] = ()
+        found = findings(self.system.laws)
+        if found:
+            self.reasons = tuple(words.of_finding(f, self.layout, self.u) for f in found)
+            self._decompose()
+            return
+        try:
+            self._factor: Factor = factorise(self.system)
+        except IllConditionedError:
+            self._take_over()
+
+    def _take_over(self) -> None:
+        """From the nodal form to the branch-current form; from there to the singular case."""
+        self.took_over, self.form = True, "branch-current"
+        self.system = System(self.layout, self.form, self.s)
+        try:
+            if self.system.size <= LARGEST:
+                self._factor = DenseFactor(self.system, strict=False)
+            else:
+                from equiv.equations.sparse import SparseFactor
+
+                self._factor = SparseFactor(self.system, strict=False)
+        except IllConditionedError:
+            self._decompose()
+
+    def _decompose(self) -> None:
+        if self.form != "branch-current":
+            self.form = "branch-current"
+            self.system = System(self.layout, self.form, self.s)
+        if self.system.size > LARGEST:
+            raise NoUniqueSolutionError(self._complaints())
+        self.degenerate = Degenerate(self.system)
+        self._factor = self.degenerate
+        if not self.reasons:
+            self.reasons = (words.of_branches(self.degenerate.culprits(), self.layout),)
+
+    def _complaints(self) -> list[Diagnostic]:
+        reasons = self.reasons or ("the network's equations are singular",)
+        return [Diagnostic("no-unique-solution", reason) for reason in reasons]
+
+    def _solved(self, how: str, right: Numbers) -> Numbers:
+        try:
+            return getattr(self._factor, how)(right)  # type: ignore[no-any-return]
+        except IllConditionedError:
+            if self.took_over:
+                raise NoUniqueSolutionError(self._complaints()) from None
+        raise _TakenOverError
+
+    def _retry(self, work: Callable[[], T]) -> T:
+        """Do some work; once more in the branch-current form if the nodal one loses its digits."""
+        try:
+            return work()
+        except _TakenOverError:
+            self._take_over()
+            return work()
+
+    def row(self, quantity: Quantity) -> Row:
+        """The row of a voltage or current quantity."""
+        return self.system.row(quantity)
+
+    def unique(self, quantity: Quantity) -> bool:
+        """Whether a quantity is the same in every solution of the network."""
+        return self.degenerate is None or self.degenerate.unique(self.row(quantity))
+
+    def consistent(self, u: Numbers) -> bool:
+        """Whether these values of the sources give a solution."""
+        return self.degenerate is None or self.degenerate.consistent(u)
+
+    def require_unique(self, quantity: Quantity) -> None:
+        """Raise NoUniqueSolutionError where a quantity is not determined."""
+        if not self.unique(quantity):
+            message = f"{quantity} has no unique value: {'; '.join(self.reasons)}"
+            raise NoUniqueSolutionError(Diagnostic("no-unique-solution", message))
+
+    def coefficients(self, quantity: Quantity) -> Numbers:
+        """What one unit of each source gives to a voltage or current (one transposed solve).
+
+        The coefficient of a source that alone has no solution has no meaning; ask `consistent`.
+        """
+
+        def work() -> Numbers:
+            row = self.row(quantity)
+            return self.system.gather(row, self._solved("solve_transposed", row.state))
+
+        return self._retry(work)
+
+    def state(self, u: Numbers | None = None) -> State:
+        """The solution for given values of the sources (all of them on, if none are given)."""
+        values = self.u if u is None else u
+
+        def work() -> State:
+            x = self._solved("solve", self.system.excitation(values))
+            return State(self.system, x, values)
+
+        return self._retry(work)
+
+    def values(self, quantity: Quantity, columns: Numbers) -> list[complex]:
+        """A voltage or current for each column of source values, solved in blocks."""
+
+        def work() -> Numbers:
+            row = self.row(quantity)
+            x = self._solved("solve", self.system.excitation(columns))
+            return np.asarray(row.state @ x + row.source @ columns)
+
+        return [complex(value) for value in self._retry(work)]
+
+    def require_solution(self) -> None:
+        """Raise NoUniqueSolutionError where all the sources together have no solution."""
+        if not self.consistent(self.u):
+            raise NoUniqueSolutionError(self._complaints())
+
+
+_BALANCE = 1e-9
+
+
+def all_on(network: Network, frequency: Frequency) -> tuple[Solver, State]:
+    """All sources at once, in the nodal form unless its powers do not balance.
+
+    Errors: NoUniqueSolutionError where all the sources together have no solution.
+    """
+    solver = Solver(network, frequency)
+    solver.require_solution()
+    state = solver.state()
+    if solver.form == "nodal" and not state.balance() <= _BALANCE:
+        solver = Solver(network, frequency, "branch-current")
+        solver.took_over = True
+        state = solver.state()
+    return solver, state
+
+
+class _TakenOverError(Exception):
+    """The nodal form has lost its digits in a solve."""
