@@ -1,0 +1,1 @@
+"""One module an analysis: its function, its frozen result, its tables."""

@@ -1,0 +1,57 @@
+"""What a reader must know before relying on a result."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterable
+
+from equiv.analyses.result import Caution
+from equiv.equations.natural import unstable_frequencies
+from equiv.equations.solution import Solver
+from equiv.network import Network
+
+_DUTY_WORDS = ("fault", "short circuit", "short-circuit", "arc flash", "prospective")
+DUTY = Caution(
+    "fault-duty",
+    "linear, steady-state values: arcs, saturation and decaying currents are not in them. "
+    "Equipment duty, protection settings and labels are the work of a licensed engineer "
+    "under the local code.",
+)
+
+
+def about_network(network: Network, headings: Iterable[str] = ()) -> list[Caution]:
+    """Warnings that belong to every result of a network."""
+    found = [Caution("unstable", _unstable(s)) for s in unstable_frequencies(network)[:1]]
+    words = [network.title, *network.notes, *headings, *network.elements]
+    words += [find.label or "" for find in network.finds]
+    if any(duty in text.lower() for text in words for duty in _DUTY_WORDS):
+        found.append(DUTY)
+    return found
+
+
+def _unstable(s: complex) -> str:
+    rate = f"+{s.real:.4g} 1/s"
+    if s.imag:
+        rate += f" ({abs(s.imag) / (2 * math.pi):.4g} Hz)"
+    return (
+        f"a natural frequency lies in the right half plane, at {rate}: "
+        "the network is unstable and this steady state is never reached"
+    )
+
+
+def about_solver(solver: Solver) -> list[Caution]:
+    """Warnings from the solution itself: a change of form, or parts that are not determined."""
+    found = []
+    if solver.degenerate is not None:
+        found += [
+            Caution("not-unique", f"{reason}; what is given here is unique all the same")
+            for reason in solver.reasons
+        ]
+    elif solver.took_over:
+        found.append(
+            Caution(
+                "branch-current-form",
+                "the nodal form would lose its digits here: solved in the branch-current form",
+            )
+        )
+    return found

@@ -1,0 +1,67 @@
+"""A table as data: columns with a name and a unit, rows of values. Drawn by `equiv.rendering`."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import NamedTuple
+
+
+class Measure(NamedTuple):
+    """A number with a unit of its own, for a column whose rows have different units."""
+
+    number: float | complex
+    unit: str
+
+
+Cell = str | int | float | complex | Measure | None
+"""None is a value that does not exist; an int is a count; floats are drawn with the column's unit."""
+
+
+@dataclass(frozen=True)
+class Column:
+    """A column: its heading, the SI unit of its numbers, and how they are to be drawn.
+
+    `unit` is the SI unit without a prefix ("A"); numbers in the column are in it, and all of
+    them are drawn with one SI prefix. "%" marks fractions that are drawn as percentages.
+    `exponent` marks small numbers drawn as 1.2e-16 (differences and residuals).
+    `key` marks the columns repeated when a wide table is drawn in parts.
+    Columns with the same `family` word are drawn with the same prefix and decimals.
+    """
+
+    name: str
+    unit: str = ""
+    key: bool = False
+    exponent: bool = False
+    family: str = ""
+
+
+@dataclass(frozen=True)
+class Row:
+    """The cells of a row; `level` 1 is a member under a group, `total` rows stand under a rule."""
+
+    cells: tuple[Cell, ...]
+    level: int = 0
+    total: bool = False
+
+
+@dataclass(frozen=True)
+class Table:
+    """A heading, sub-headings, columns and rows, and the notes that stand under them.
+
+    `text` is drawn as it is, line for line, in place of columns and rows (a network's text).
+    """
+
+    title: str
+    subtitles: tuple[str, ...] = ()
+    columns: tuple[Column, ...] = ()
+    rows: tuple[Row, ...] = ()
+    notes: tuple[str, ...] = ()
+    text: str | None = None
+    name: str = "table"
+    """A word for the table, used in CSV where a result has several."""
+
+    @staticmethod
+    def rows_of(rows: Sequence[Sequence[Cell]]) -> tuple[Row, ...]:
+        """Plain rows from plain sequences."""
+        return tuple(Row(tuple(cells)) for cells in rows)
