@@ -64,9 +64,9 @@ def kinds() -> str:
 
 def statements() -> str:
     """The statements about the file."""
-    from equiv.language import STATEMENTS
+    from equiv.analyses.kinds import statements as listed
 
-    rows = [f"| `{written}` | {meaning} |" for written, meaning in STATEMENTS.items()]
+    rows = [f"| `{written}` | {meaning} |" for written, meaning in listed()]
     return "\n".join(["", "| statement | meaning |", "| --- | --- |", *rows, "", ""])
 
 

@@ -36,9 +36,7 @@ class Report(Result):
         verdict = "Nothing is wrong or doubtful." if not doubts else ""
         if self.refusal:
             verdict = "The network has no unique solution for all that is asked of it."
-        frequencies = ", ".join(
-            frequency_words(f, "").rstrip(", ") for f in self.network.frequencies
-        )
+        frequencies = ", ".join(frequency_words(f, "") for f in self.network.frequencies)
         return (
             Table(
                 self.network.title or "Network",

@@ -22,6 +22,7 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.solution import Solver, State, all_on
 from equiv.errors import Diagnostic
 from equiv.network import Find, Network, Progress
+from equiv.units import write_value
 
 
 class TermFinder:
@@ -229,4 +230,4 @@ def _same(one: Frequency, other: Frequency) -> bool:
 
 
 def at_words(frequency: Frequency) -> str:
-    return f" at {frequency.hertz:g} Hz" if frequency.omega else ""
+    return f" at {write_value(frequency.value, frequency.unit)}" if frequency.omega else ""

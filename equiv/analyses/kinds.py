@@ -99,7 +99,13 @@ def _page(kind: type[Element]) -> Table:
     return Table(kind.kind, text="\n".join(lines) + "\n", name=kind.kind)
 
 
+def statements() -> list[tuple[str, str]]:
+    """How each statement about the file is written, and what it means."""
+    return [(w, meaning) for w, _, meaning in (t.partition(": ") for t in STATEMENTS.values())]
+
+
 def _statements() -> Table:
     columns = (Column("statement", key=True), Column("meaning"))
-    rows = Table.rows_of(list(STATEMENTS.items()))
-    return Table("Statements about the file", (), columns, rows, name="statements")
+    return Table(
+        "Statements about the file", (), columns, Table.rows_of(statements()), name="statements"
+    )

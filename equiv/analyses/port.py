@@ -209,7 +209,7 @@ def _determined(solver: Solver, quantities: Sequence[Quantity], tests: int) -> b
 
 
 def _checks(network: Network, e: Equivalent) -> list[Check]:
-    where = f" at {frequency_words(e.frequency, '').rstrip(', ')}" if e.frequency.omega else ""
+    where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
     checks = []
     if e.thevenin and e.norton:
         checks.append(Check(f"Norton against Thevenin{where}", e.disagreement, CLOSURE_LIMIT))
@@ -225,13 +225,14 @@ def _checks(network: Network, e: Equivalent) -> list[Check]:
 
 def _cautions(e: Equivalent) -> list[Caution]:
     least = e.least_resistance
-    if least is None or least > 0:
+    # without a Thevenin form a conductance of zero is an ideal current source: nothing to warn of
+    if least is None or least > 0 or (least == 0 and not e.thevenin):
         return []
-    what = "is zero" if least == 0 else "is negative"
+    what = "resistance" if e.thevenin else "conductance"
     return [
         Caution(
             "resistance-not-positive",
-            f"the resistance of {e.named} {what}: this is legal, but the operating point "
-            "with a load may not be stable",
+            f"the {what} of {e.named} is {'zero' if least == 0 else 'negative'}: this is legal, "
+            "but the operating point with a load may not be stable",
         )
     ]

@@ -93,7 +93,7 @@ def solve(network: Network, progress: Progress = no_progress) -> Solution:
         if solver.degenerate is not None:
             refusal = ExitStatus.NO_UNIQUE_SOLUTION
         states.append(found)
-        where = f" at {frequency.hertz:g} Hz" if frequency.omega else ""
+        where = f" at {frequency_words(frequency, '')}" if frequency.omega else ""
         checks.append(Check(f"power balance{where}", found.balance, CLOSURE_LIMIT))
         cautions += about_solver(solver)
     return Solution(

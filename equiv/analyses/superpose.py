@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import Any, ClassVar, Literal
 
 from equiv.analyses.cautions import about_network
@@ -44,10 +44,11 @@ class Superposition(Result):
         tables: list[Table] = []
         for q in self.quantities:
             tables.extend(quantity_tables(self.network, q, self.detail, self.how_checked, digits))
-        notes = tuple(f"Caution: {caution.message}" for caution in self.cautions)
-        checks = tuple(check.sentence() for check in self.checks if check.shared)
-        last = tables[-1]
-        return (*tables[:-1], replace(last, notes=(*last.notes, *checks, *notes)))
+        shared = [check.sentence() for check in self.checks if check.shared]
+        # what the terms cost by cancelling stands under their own table
+        shared += [f"Caution: {c.message}" for c in self.cautions if c.code != "cancellation"]
+        tables.append(Table("Checks and cautions", (), notes=tuple(shared), name="checks"))
+        return tuple(tables)
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object."""

@@ -16,7 +16,7 @@ from equiv.analyses.terms import (
 )
 from equiv.elements.element import Frequency
 from equiv.network import Network
-from equiv.units import say
+from equiv.units import say, write_value
 
 HOW_CHECKED = {
     "each": "each term found again in its own sub-circuit, branch-current form",
@@ -29,8 +29,7 @@ def frequency_words(frequency: Frequency, what: str = "phasors are rms") -> str:
     """`DC`, or the frequency and what the phasors mean."""
     if not frequency.omega:
         return "DC"
-    written = f"{float(frequency.value):.10g} {frequency.unit}"
-    return f"{written}, {what}"
+    return ", ".join(filter(None, (write_value(frequency.value, frequency.unit), what)))
 
 
 def quantity_tables(
@@ -274,16 +273,10 @@ def _rms_table(network: Network, q: QuantityTerms) -> Table:
     columns = (Column("frequency", key=True), Column("rms", q.unit, family="rms"))
     if q.quantity.what == "P":
         columns = (Column("frequency", key=True), Column("mean power", q.unit, family="rms"))
-        rows = [
-            Row((frequency_words(f.frequency, "").rstrip(", "), f.total.real))
-            for f in q.frequencies
-        ]
+        rows = [Row((frequency_words(f.frequency, ""), f.total.real)) for f in q.frequencies]
         note = "Powers of different frequencies add: their cross terms are zero in the mean."
     else:
-        rows = [
-            Row((frequency_words(f.frequency, "").rstrip(", "), abs(f.total)))
-            for f in q.frequencies
-        ]
+        rows = [Row((frequency_words(f.frequency, ""), abs(f.total))) for f in q.frequencies]
         note = "Phasors of different frequencies are never added: the rms is √Σ|X|²."
     rows.append(Row(("over all", q.rms), total=True))
     return Table(f"{q.heading[0].upper()}{q.heading[1:]} ({q.quantity}), over all frequencies",

@@ -61,15 +61,21 @@ class Degenerate:
         off = np.abs(scaled @ self.right_null)
         return bool((off <= CONSISTENT * np.abs(scaled).max(initial=0.0)).all())
 
-    def culprits(self) -> list[int]:
-        """The branches that the smallest null vector names (left or right)."""
+    def culprits(self) -> tuple[list[int], list[int]]:
+        """The branches that the smallest null vector names (left or right), or the free nodes.
+
+        Free nodes: a right null vector without currents, so that nothing fixes these voltages.
+        """
         own = np.flatnonzero(self.system.unknown >= 0)
         places = self.system.unknown[own]
+        nodes = self.system.layout.node_count
         best: list[int] = []
-        for null in (self.left_null, self.right_null):
+        for null in (self.right_null, self.left_null):
             for vector in null.T:
-                part = np.abs(vector[places])
-                named = own[part > 1e-6 * np.abs(vector).max()].tolist()
+                large = np.abs(vector) > 1e-6 * np.abs(vector).max()
+                named = own[large[places]].tolist()
+                if not named and null is self.right_null:
+                    return [], np.flatnonzero(large[:nodes]).tolist()
                 if named and (not best or len(named) < len(best)):
                     best = named
-        return best
+        return best, []

@@ -131,7 +131,9 @@ class Solver:
         self.degenerate = Degenerate(self.system)
         self._factor = self.degenerate
         if not self.reasons:
-            self.reasons = (words.of_branches(self.degenerate.culprits(), self.layout),)
+            branches, nodes = self.degenerate.culprits()
+            of = words.of_nodes(nodes, self.layout) if nodes else None
+            self.reasons = (of or words.of_branches(branches, self.layout),)
 
     def _complaints(self) -> list[Diagnostic]:
         reasons = self.reasons or ("the network's equations are singular",)

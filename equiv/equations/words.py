@@ -57,6 +57,23 @@ def _loop(names: list[str], off: float, layout: Layout) -> str:
     return f"{what}: how the current divides between them is not determined"
 
 
+def of_nodes(nodes: list[int], layout: Layout) -> str:
+    """Nodes whose voltage nothing fixes, and what meets there."""
+    network = layout.network
+    free = {network.nodes[i] for i in nodes}
+    meeting = [
+        e.name
+        for e in network.elements.values()
+        # a name with a blank in it is a test source of ours, not the user's
+        if free & set(e.nodes) and not free >= set(e.nodes) and " " not in e.name
+    ]
+    many = "s" if len(nodes) > 1 else ""
+    return (
+        f"nothing fixes the voltage of node{many} {listed(sorted(free))}: "
+        f"only {listed(meeting or ['nothing'])} meet{'s' if len(meeting) < 2 else ''} there"
+    )
+
+
 def of_branches(branches: list[int], layout: Layout) -> str:
     """The elements that a null vector names, and what among them can be at fault."""
     names = _names(branches, layout)
