@@ -1,0 +1,5 @@
+"""`python -m equiv` is the command line."""
+
+from equiv.cli import main
+
+main()

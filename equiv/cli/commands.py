@@ -1,0 +1,226 @@
+"""The commands. Each calls the library function of its name; the docstrings are the help."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Annotated, Literal
+
+import typer
+
+import equiv
+from equiv.cli import completion
+from equiv.cli.options import shared
+from equiv.cli.run import Run
+
+if TYPE_CHECKING:
+    from equiv.analyses.result import Result
+
+app = typer.Typer(
+    name="equiv",
+    rich_markup_mode=None,
+    pretty_exceptions_enable=False,
+    context_settings={"help_option_names": ["--help", "-h"]},
+)
+
+File = Annotated[
+    str, typer.Argument(metavar="FILE", show_default=False, help="Network file; - reads a pipe.")
+]
+Quantities = Annotated[
+    list[str] | None,
+    typer.Argument(
+        metavar="QUANTITY ...",
+        show_default=False,
+        help="I:R3, V:a, V:a,b, V:R3, P:R3; the file's find statements if none is given.",
+        autocompletion=completion.quantities,
+    ),
+]
+
+
+def _version(wanted: bool) -> None:
+    if wanted:
+        typer.echo(f"equiv {equiv.__version__}")
+        raise typer.Exit
+
+
+@app.callback()
+def program(
+    version: Annotated[
+        bool,
+        typer.Option("--version", callback=_version, is_eager=True, help="Print the version."),
+    ] = False,
+) -> None:
+    """Superposition and port equivalents of electrical networks with controlled sources.
+
+    \b
+    To begin:
+      equiv sample                        what samples there are
+      equiv sample NAME --output f.equiv  one of them to start from
+      equiv superpose f.equiv             what each source gives to each quantity
+      equiv kinds                         the network language on one page
+
+    \b
+    Exit status: 0 done; 1 done, but a check failed; 2 wrong usage; 3 the file
+    has errors; 4 no unique solution; 5 what was asked for does not exist;
+    6 a file cannot be read or written; 70 an error of the program itself.
+    """
+
+
+@app.command()
+@shared
+def check(run: Run, file: File) -> Result:
+    """What is wrong or doubtful in a file, and what is in it.
+
+    \b
+    Example:
+      equiv check supply.equiv
+    """
+    return equiv.check(run.network(file))
+
+
+@app.command()
+@shared
+def solve(run: Run, file: File) -> Result:
+    """Everything at once: voltages, currents, powers, their balance.
+
+    \b
+    Example:
+      equiv solve supply.equiv --as csv --output supply.csv
+    """
+    return equiv.solve(run.network(file), progress=run.progress)
+
+
+@app.command()
+@shared
+def superpose(
+    run: Run,
+    file: File,
+    quantities: Quantities = None,
+    detail: Annotated[
+        bool, typer.Option("--detail", help="Each sub-circuit: what its controlled sources do.")
+    ] = False,
+    paths: Annotated[
+        bool, typer.Option("--paths", help="Split each term by the controlled source it takes.")
+    ] = False,
+    by: Annotated[
+        Literal["source", "group"], typer.Option(help="A term for each source or each group.")
+    ] = "source",
+    check: Annotated[
+        Literal["auto", "all", "none"],
+        typer.Option(help="Which terms are found again by a second method."),
+    ] = "auto",
+) -> Result:
+    """Term by term: what each source gives to each quantity.
+
+    Every controlled source stays in place in every term; each term is proved by a second
+    method, and the sum by the network with all sources on.
+
+    \b
+    Examples:
+      equiv superpose supply.equiv I:R3
+      equiv superpose supply.equiv V:bus,gnd --detail --by group
+    """
+    return equiv.superpose(
+        run.network(file),
+        *(quantities or ()),
+        by=by,
+        detail=detail,
+        paths=paths,
+        check=check,
+        progress=run.progress,
+    )
+
+
+@app.command()
+@shared
+def isolate(
+    run: Run,
+    file: File,
+    source: Annotated[
+        str,
+        typer.Argument(
+            metavar="SOURCE",
+            show_default=False,
+            help="An independent source, or a group of them.",
+            autocompletion=completion.sources,
+        ),
+    ],
+) -> Result:
+    """Print the sub-circuit of one source, ready to be run again.
+
+    The other sources become shorts and opens of the same names.
+
+    \b
+    Example:
+      equiv isolate supply.equiv Vgen | equiv solve -
+    """
+    return equiv.isolate(run.network(file), source)
+
+
+@app.command()
+@shared
+def port(
+    run: Run,
+    file: File,
+    ports: Annotated[
+        list[str] | None,
+        typer.Argument(
+            metavar="PORT ...",
+            show_default=False,
+            help="A declared port or a pair of nodes a,b; all declared ports if none is given.",
+            autocompletion=completion.ports,
+        ),
+    ] = None,
+) -> Result:
+    """Thevenin and Norton equivalents of one port or several.
+
+    \b
+    Examples:
+      equiv port supply.equiv PANEL
+      equiv port supply.equiv bus,gnd pump,gnd --json
+    """
+    return equiv.port(run.network(file), *(ports or ()), progress=run.progress)
+
+
+@app.command()
+@shared
+def kinds(
+    run: Run,
+    kind: Annotated[
+        str | None,
+        typer.Argument(
+            metavar="KIND",
+            show_default=False,
+            help="One kind of element, in full.",
+            autocompletion=completion.kinds,
+        ),
+    ] = None,
+) -> Result:
+    """The network language on one page, or one kind in full.
+
+    \b
+    Example:
+      equiv kinds ccvs
+    """
+    return equiv.kinds(kind)
+
+
+@app.command()
+@shared
+def sample(
+    run: Run,
+    name: Annotated[
+        str | None,
+        typer.Argument(
+            metavar="NAME",
+            show_default=False,
+            help="The sample to print.",
+            autocompletion=completion.samples,
+        ),
+    ] = None,
+) -> Result:
+    """List the samples, or print one to start from.
+
+    \b
+    Example:
+      equiv sample NAME --output my.equiv
+    """
+    return equiv.sample(name)
