@@ -234,7 +234,8 @@ def say(value: complex, unit: str, digits: int = 5) -> str:
         if 1e-4 <= scaled < 1e7 or not size
         else (f"{scaled:.{digits - 1}e}")
     )
-    text = f"{number} {prefix_of(power)}{unit}".rstrip()
+    prefix, sign = prefix_of(power).replace("u", "µ"), unit.replace("ohm", "Ω")
+    text = f"{number} {prefix}{sign}".rstrip()
     if value.imag == 0:
         return f"-{text}" if value.real < 0 else text
     return f"{text} at {math.degrees(cmath.phase(value)):.2f} deg"

@@ -14,6 +14,7 @@ from equiv.analyses.tables import Column, Row, Table
 from equiv.elements import Element
 from equiv.elements.element import Frequency, Parameters
 from equiv.equations.solution import Solver
+from equiv.equations.words import listed
 from equiv.errors import ExitStatus, NoUniqueSolutionError
 from equiv.network import Network
 from equiv.units import SYMBOL, Symbol, as_number, write_value
@@ -64,7 +65,11 @@ def check(network: Network) -> Report:
     """
     doubts = list(_doubts(network))
     unsolvable = False
-    if not any(_has_symbol(e) for e in network.elements.values()):
+    symbols = [e.name for e in network.elements.values() if _has_symbol(e)]
+    if symbols:
+        words = f"{listed(symbols)} written with `?`: a numeric result asks for a value"
+        doubts.append(Caution("symbol", words))
+    else:
         for frequency in network.frequencies:
             found, bad = _solvability(network, frequency)
             doubts += found

@@ -56,7 +56,9 @@ def _term_table(network: Network, e: Equivalent, index: int) -> Table:
         f"current out of {port.plus} into the load",
         frequency_words(e.frequency),
     )
-    return Table(network.title or "Port equivalent", subtitles, columns, tuple(rows), name="terms")
+    return Table(
+        network.title or "Port equivalent", subtitles, columns, tuple(rows), name=port.name
+    )
 
 
 def _equivalents_table(e: Equivalent) -> Table:

@@ -136,7 +136,7 @@ def controlled_states(network: Network, state: State) -> tuple[ControlledState, 
                 output=state.of(Quantity(element.output, (element.name,))),
                 unit="V" if element.output == "V" else "A",
                 sensed_unit=element.senses.unit,
-                reversed=sensed.real < -1e-14 * size,
+                reversed=bool(sensed.real < -1e-14 * size),
             )
         )
     return tuple(found)

@@ -149,7 +149,7 @@ def _cancellation(q: QuantityTerms, at: FrequencyTerms) -> list[Caution]:
     return [
         Caution(
             "cancellation",
-            f"the terms of {q.quantity} cancel: Σ|term| is {at.cancellation:.3g} times the total, "
+            f"the terms of {q.quantity} cancel: they add to {at.cancellation:.3g} times the total, "
             f"which costs {at.digits_lost:.1f} digits",
         )
     ]

@@ -58,6 +58,12 @@ def _titles(network: Network, q: QuantityTerms, at: FrequencyTerms) -> tuple[str
     return title, (*labels, f"{heading} ({q.quantity})", frequency_words(at.frequency))
 
 
+def _name(q: QuantityTerms, at: FrequencyTerms) -> str:
+    """What tells this table from the others of the result."""
+    where = f" at {frequency_words(at.frequency, '')}" if at.frequency.omega else ""
+    return f"{q.quantity}{where}"
+
+
 def _term_table(
     network: Network, q: QuantityTerms, at: FrequencyTerms, how: str, digits: int
 ) -> Table:
@@ -68,7 +74,7 @@ def _term_table(
         Column("source", key=True),
         Column("value"),
         Column("coefficient"),
-        Column("contribution", q.unit, family="term"),
+        Column("contribution", q.unit, repeat=True, family="term"),
         *([Column("direction")] if dc else []),
         Column("in-phase share", "%"),
         Column("running sum", q.unit, family="term"),
@@ -83,14 +89,16 @@ def _term_table(
     way = [_direction(total)] if dc and total is not None else blank
     whole: Cell = 1.0 if at.complete and not at.cancels_to_nothing else ""
     rows.append(Row(("", "sum", "", "", _cell(total, dc), *way, whole, "", ""), total=True))
-    rows.append(Row(("", "all at once", "", "", _cell(at.all_on, dc), *blank, "", "", "")))
+    rows.append(
+        Row(("", "all at once", "", "", _cell(at.all_on, dc), *blank, "", "", ""), total=True)
+    )
     return Table(
         title,
         subtitles,
         tuple(columns),
         tuple(rows),
         tuple(_notes(q, at, how, digits)),
-        name="terms",
+        name=_name(q, at),
     )
 
 
@@ -154,7 +162,7 @@ def _notes(q: QuantityTerms, at: FrequencyTerms, how: str, digits: int) -> list[
     if at.complete:
         notes.append(
             Check(
-                "difference of sum and all at once, of Σ|term|", at.difference, CLOSURE_LIMIT
+                "difference of sum and all at once, relative", at.difference, CLOSURE_LIMIT
             ).sentence()
         )
     else:
@@ -174,8 +182,8 @@ def _notes(q: QuantityTerms, at: FrequencyTerms, how: str, digits: int) -> list[
         )
     elif at.complete and (at.cancellation or 0) > NOTABLE_CANCELLATION:
         notes.append(
-            f"The terms cancel: Σ|term| is {at.cancellation:.3g} times the total, which costs "
-            f"{at.digits_lost:.1f} digits."
+            f"The terms cancel: their magnitudes add to {at.cancellation:.3g} times the total, "
+            f"which costs {at.digits_lost:.1f} digits."
         )
     return notes
 
@@ -204,7 +212,7 @@ def _paths_table(q: QuantityTerms, at: FrequencyTerms) -> Table:
         "the sub-circuit gives with the other controlled sources dead.",
     )
     return Table(f"Paths of the terms of {q.quantity}", (frequency_words(at.frequency),), columns,
-                 tuple(rows), notes, name="paths")  # fmt: skip
+                 tuple(rows), notes, name=f"paths of {_name(q, at)}")  # fmt: skip
 
 
 def _detail_table(network: Network, at: FrequencyTerms, index: int, digits: int) -> Table:
@@ -266,7 +274,7 @@ def _power_tables(network: Network, q: QuantityTerms, at: FrequencyTerms) -> lis
         "Powers do not superpose: the cross terms are what each pair of sources gives together.",
         Check("difference of total and all at once", power.difference, CLOSURE_LIMIT).sentence(),
     )
-    return [Table(title, subtitles, columns, (*own, *cross, *sums), notes, name="power")]
+    return [Table(title, subtitles, columns, (*own, *cross, *sums), notes, name=_name(q, at))]
 
 
 def _rms_table(network: Network, q: QuantityTerms) -> Table:
@@ -277,10 +285,10 @@ def _rms_table(network: Network, q: QuantityTerms) -> Table:
         note = "Powers of different frequencies add: their cross terms are zero in the mean."
     else:
         rows = [Row((frequency_words(f.frequency, ""), abs(f.total))) for f in q.frequencies]
-        note = "Phasors of different frequencies are never added: the rms is √Σ|X|²."
+        note = "Phasors of different frequencies are never added: the rms over all is the root of the sum of squares."
     rows.append(Row(("over all", q.rms), total=True))
     return Table(f"{q.heading[0].upper()}{q.heading[1:]} ({q.quantity}), over all frequencies",
-                 (), columns, tuple(rows), (note,), name="rms")  # fmt: skip
+                 (), columns, tuple(rows), (note,), name=f"rms of {q.quantity}")  # fmt: skip
 
 
 def askable_tables(network: Network) -> tuple[Table, ...]:

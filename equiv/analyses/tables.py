@@ -25,13 +25,15 @@ class Column:
     `unit` is the SI unit without a prefix ("A"); numbers in the column are in it, and all of
     them are drawn with one SI prefix. "%" marks fractions that are drawn as percentages.
     `exponent` marks small numbers drawn as 1.2e-16 (differences and residuals).
-    `key` marks the columns repeated when a wide table is drawn in parts.
+    `key` marks the columns that stand in every part of a wide table drawn in parts; those marked
+    `repeat` stand again at the beginning of its later parts.
     Columns with the same `family` word are drawn with the same prefix and decimals.
     """
 
     name: str
     unit: str = ""
     key: bool = False
+    repeat: bool = False
     exponent: bool = False
     family: str = ""
 

@@ -16,11 +16,10 @@ from equiv.equations.degenerate import LARGEST, Degenerate
 from equiv.equations.dense import DenseFactor
 from equiv.equations.factor import Factor, IllConditionedError, factorise
 from equiv.equations.graph import findings
-from equiv.equations.layout import Layout, Numbers
+from equiv.equations.layout import Layout, Numbers, floats
 from equiv.equations.system import Row, System
 from equiv.errors import Diagnostic, NoUniqueSolutionError
 from equiv.network import Network
-from equiv.units import Value, as_number
 
 T = TypeVar("T")
 
@@ -32,18 +31,11 @@ def complex_frequency(frequency: Frequency) -> float | complex:
 
 def source_values(network: Network, frequency: Frequency) -> Numbers:
     """The rms value (V or A) of each source at a frequency; 0 for a source at another one."""
-    peak = math.sqrt(2) if network.phasors == "peak" else 1.0
-    values: list[float | complex] = []
-    for source in network.sources:
-        at = network.frequency_of(source)
-        here = math.isclose(at.omega, frequency.omega, rel_tol=1e-12)
-        scale = peak if at.omega else 1.0
-        values.append(as_number(_value(source.value)) / scale if here else 0.0)
-    return np.array(values) if values else np.empty(0)
-
-
-def _value(value: object) -> Value:
-    return value  # type: ignore[return-value]
+    values = floats([source.value for source in network.sources], network.sources)
+    at = [network.frequency_of(source).omega for source in network.sources]
+    here = [math.isclose(omega, frequency.omega, rel_tol=1e-12) for omega in at]
+    peak = math.sqrt(2) if network.phasors == "peak" and frequency.omega else 1.0
+    return np.where(here, values / peak, 0.0)
 
 
 class State:

@@ -66,8 +66,9 @@ def grid_text(side: int = SIDE, sources: int = SOURCES, controlled: int = CONTRO
             if i + 1 < side:
                 value = f"{draw.uniform(1, 10):.4f} ohm"
                 lines.append(f"resistor Rv{i}_{j} {node(i, j)} {node(i + 1, j)} {value}")
-    for k in range(sources):
-        lines.append(f"current I{k} gnd > {anywhere()} {draw.uniform(-1, 1):.3f} A")
+    lines += [
+        f"current I{k} gnd > {anywhere()} {draw.uniform(-1, 1):.3f} A" for k in range(sources)
+    ]
     for k in range(controlled):
         a, b, p, q = (anywhere() for _ in range(4))
         lines.append(f"vccs G{k} {a} > {b} g 1 mS senses V:{p},{q}")

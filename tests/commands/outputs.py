@@ -1,0 +1,65 @@
+"""The commands whose whole output is kept: `python tests/commands/outputs.py` renews them."""
+
+import os
+import subprocess
+import sys
+from pathlib import Path
+
+ROOT = Path(__file__).resolve().parents[2]
+EXPECTED = Path(__file__).with_name("expected")
+
+SAMPLES = sorted(path.stem for path in (ROOT / "samples").glob("*.equiv"))
+COMMANDS = {
+    **{f"superpose-{name}": f"superpose samples/{name}.equiv" for name in SAMPLES},
+    **{
+        f"port-{name}": f"port samples/{name}.equiv"
+        for name in SAMPLES
+        if "port " in (ROOT / "samples" / f"{name}.equiv").read_text(encoding="utf-8")
+    },
+    "check": "check samples/pump-station.equiv",
+    "solve": "solve samples/line-driver.equiv",
+    "solve-two-frequencies": "solve samples/two-frequency-filter.equiv",
+    "superpose-detail": "superpose samples/two-stage-amplifier.equiv --detail",
+    "superpose-paths": "superpose samples/two-stage-amplifier.equiv --paths --digits 4",
+    "superpose-groups": "superpose samples/pump-station.equiv --by group",
+    "superpose-power": "superpose samples/line-driver.equiv P:Rend",
+    "superpose-unchecked": "superpose samples/pump-station.equiv --check none",
+    "superpose-given": "superpose samples/pump-station.equiv --given tail=20mohm",
+    "superpose-frequency": "superpose samples/line-driver.equiv --frequency 1kHz",
+    "superpose-csv": "superpose samples/line-driver.equiv --as csv",
+    "superpose-markdown": "superpose samples/line-driver.equiv --as markdown",
+    "superpose-latex": "superpose samples/line-driver.equiv --as latex",
+    "superpose-json": "superpose samples/redundant-supply.equiv V:bus --json",
+    "superpose-not-unique": "superpose samples/parallel-supplies.equiv I:North",
+    "isolate": "isolate samples/pump-station.equiv standby",
+    "port-several": "port samples/pump-station.equiv PUMP gr,gnd",
+    "port-json": "port samples/current-loop.equiv --json",
+    "port-csv": "port samples/pump-station.equiv --as csv",
+    "kinds": "kinds",
+    "kinds-opamp": "kinds opamp",
+    "sample": "sample",
+    "error": "check docs/examples/wrong.equiv",
+    "error-json": "check docs/examples/wrong.equiv --json",
+    "usage": "superpose samples/pump-station.equiv I:Falt",
+}
+
+
+def output(words: str, columns: int | None) -> str:
+    """What a command prints on both streams, and its exit status."""
+    env = {k: v for k, v in os.environ.items() if k not in ("COLUMNS", "NO_COLOR")}
+    env["PYTHONUTF8"] = "1"
+    if columns:
+        env["COLUMNS"] = str(columns)
+    done = subprocess.run(
+        [sys.executable, "-m", "equiv", *words.split()],
+        cwd=ROOT, env=env, capture_output=True, text=True, encoding="utf-8", check=False,
+    )  # fmt: skip
+    return f"{done.stdout}--- standard error\n{done.stderr}--- exit status {done.returncode}\n"
+
+
+if __name__ == "__main__":
+    EXPECTED.mkdir(exist_ok=True)
+    for name, words in COMMANDS.items():
+        for form, columns in (("80", 80), ("pipe", None)):
+            path = EXPECTED / f"{name}.{form}.txt"
+            path.write_text(output(words, columns), encoding="utf-8")
