@@ -8,8 +8,8 @@ from dataclasses import dataclass
 from typing import Any, ClassVar
 
 from equiv.analyses.cautions import DUTY, about_network
+from equiv.analyses.headings import frequency_words
 from equiv.analyses.result import Caution, Result
-from equiv.analyses.superpose_tables import frequency_words
 from equiv.analyses.tables import Column, Row, Table
 from equiv.elements import Element
 from equiv.elements.element import Frequency, Parameters

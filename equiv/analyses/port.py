@@ -10,10 +10,11 @@ from typing import Any, ClassVar
 import numpy as np
 
 from equiv.analyses.cautions import about_network
+from equiv.analyses.closing import closing_table
+from equiv.analyses.headings import frequency_words
 from equiv.analyses.port_proof import Equivalent, blackman, three_loads
 from equiv.analyses.port_tables import port_data, port_tables
 from equiv.analyses.result import Caution, Check, Result
-from equiv.analyses.superpose_tables import frequency_words
 from equiv.analyses.tables import Table
 from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements import KINDS
@@ -48,14 +49,11 @@ class PortEquivalent(Result):
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """Terms, equivalents, test sources and proof, for each frequency."""
         tables = [t for e in self.equivalents for t in port_tables(self.network, e)]
-        checks = tuple(check.sentence() for check in self.checks)
-        cautions = tuple(f"Caution: {caution.message}" for caution in self.cautions)
-        notes = (
+        remark = (
             "An equivalent stands for the terminals alone: losses and efficiency inside it are "
-            "not those of the network.",
+            "not those of the network."
         )
-        title = "Checks and cautions"
-        return (*tables, Table(title, (), notes=(*checks, *notes, *cautions), name="checks"))
+        return (*tables, closing_table(self.network, self.checks, self.cautions, remark))
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object; `frequencies` holds all of them where there are several."""

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from typing import Any
 
+from equiv.analyses.headings import frequency_words
 from equiv.analyses.port_proof import Equivalent
 from equiv.analyses.result import pair
-from equiv.analyses.superpose_tables import frequency_words
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
 from equiv.equations.layout import Numbers
 from equiv.network import Network

@@ -8,8 +8,9 @@ from typing import Any, ClassVar, NamedTuple
 import numpy as np
 
 from equiv.analyses.cautions import about_network, about_solver
+from equiv.analyses.closing import closing_table
+from equiv.analyses.headings import frequency_words
 from equiv.analyses.result import Caution, Check, Result, finite, pair
-from equiv.analyses.superpose_tables import frequency_words
 from equiv.analyses.tables import Cell, Column, Row, Table
 from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements.element import Frequency
@@ -57,9 +58,7 @@ class Solution(Result):
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """Nodes and elements at each frequency."""
         tables = [t for f in self.frequencies for t in _tables(self.network, f)]
-        cautions = tuple(f"Caution: {caution.message}" for caution in self.cautions)
-        checks = tuple(check.sentence() for check in self.checks)
-        return (*tables, Table("Checks and cautions", notes=(*checks, *cautions), name="checks"))
+        return (*tables, closing_table(self.network, self.checks, self.cautions))
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object; `frequencies` holds all of them where there are several."""

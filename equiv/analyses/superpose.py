@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from typing import Any, ClassVar, Literal
 
 from equiv.analyses.cautions import about_network
+from equiv.analyses.closing import closing_table
 from equiv.analyses.finder import TermFinder, at_words
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.superpose_data import quantity_data
@@ -44,10 +45,10 @@ class Superposition(Result):
         tables: list[Table] = []
         for q in self.quantities:
             tables.extend(quantity_tables(self.network, q, self.detail, self.how_checked, digits))
-        shared = [check.sentence() for check in self.checks if check.shared]
         # what the terms cost by cancelling stands under their own table
-        shared += [f"Caution: {c.message}" for c in self.cautions if c.code != "cancellation"]
-        tables.append(Table("Checks and cautions", (), notes=tuple(shared), name="checks"))
+        cautions = [c for c in self.cautions if c.code != "cancellation"]
+        shared = [check for check in self.checks if check.shared]
+        tables.append(closing_table(self.network, shared, cautions))
         return tuple(tables)
 
     def data(self) -> dict[str, Any]:

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from itertools import count
 
+from equiv.analyses.headings import frequency_words, name_of, titles_of
+from equiv.analyses.power_tables import power_tables
 from equiv.analyses.result import Check
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
 from equiv.analyses.terms import (
@@ -14,22 +16,14 @@ from equiv.analyses.terms import (
     QuantityTerms,
     Term,
 )
-from equiv.elements.element import Frequency
 from equiv.network import Network
-from equiv.units import say, write_value
+from equiv.units import say
 
 HOW_CHECKED = {
     "each": "each term found again in its own sub-circuit, branch-current form",
     "sample": "the largest terms and some drawn ones found again in branch-current form",
     "none": "terms were not found again by a second method (--check none)",
 }
-
-
-def frequency_words(frequency: Frequency, what: str = "phasors are rms") -> str:
-    """`DC`, or the frequency and what the phasors mean."""
-    if not frequency.omega:
-        return "DC"
-    return ", ".join(filter(None, (write_value(frequency.value, frequency.unit), what)))
 
 
 def quantity_tables(
@@ -39,7 +33,7 @@ def quantity_tables(
     tables = []
     for at in q.frequencies:
         if at.power:
-            tables.extend(_power_tables(network, q, at))
+            tables.extend(power_tables(network, q, at))
             continue
         tables.append(_term_table(network, q, at, how, digits))
         if any(term.paths for term in at.terms):
@@ -51,23 +45,10 @@ def quantity_tables(
     return tables
 
 
-def _titles(network: Network, q: QuantityTerms, at: FrequencyTerms) -> tuple[str, tuple[str, ...]]:
-    heading = q.heading[0].upper() + q.heading[1:]
-    labels = (q.label[0].upper() + q.label[1:],) if q.label else ()
-    title = network.title or "Superposition"
-    return title, (*labels, f"{heading} ({q.quantity})", frequency_words(at.frequency))
-
-
-def _name(q: QuantityTerms, at: FrequencyTerms) -> str:
-    """What tells this table from the others of the result."""
-    where = f" at {frequency_words(at.frequency, '')}" if at.frequency.omega else ""
-    return f"{q.quantity}{where}"
-
-
 def _term_table(
     network: Network, q: QuantityTerms, at: FrequencyTerms, how: str, digits: int
 ) -> Table:
-    title, subtitles = _titles(network, q, at)
+    title, subtitles = titles_of(network, q, at)
     dc = not at.frequency.omega
     columns = [
         Column("no.", key=True),
@@ -98,7 +79,7 @@ def _term_table(
         tuple(columns),
         tuple(rows),
         tuple(_notes(q, at, how, digits)),
-        name=_name(q, at),
+        name=name_of(q, at),
     )
 
 
@@ -212,7 +193,7 @@ def _paths_table(q: QuantityTerms, at: FrequencyTerms) -> Table:
         "the sub-circuit gives with the other controlled sources dead.",
     )
     return Table(f"Paths of the terms of {q.quantity}", (frequency_words(at.frequency),), columns,
-                 tuple(rows), notes, name=f"paths of {_name(q, at)}")  # fmt: skip
+                 tuple(rows), notes, name=f"paths of {name_of(q, at)}")  # fmt: skip
 
 
 def _detail_table(network: Network, at: FrequencyTerms, index: int, digits: int) -> Table:
@@ -245,36 +226,6 @@ def _detail_table(network: Network, at: FrequencyTerms, index: int, digits: int)
         notes.append("The controlled sources' states were not found (too many sub-circuits).")
     title = f"Sub-circuit {index + 1} of {len(at.terms)}: {term.source} alone"
     return Table(title, (frequency_words(at.frequency),), notes=tuple(notes), name="sub-circuit")
-
-
-def _power_tables(network: Network, q: QuantityTerms, at: FrequencyTerms) -> list[Table]:
-    title, subtitles = _titles(network, q, at)
-    power = at.power
-    assert power is not None
-    dc = not at.frequency.omega
-    reactive = [] if dc else [Column("reactive power", "var", family="power")]
-
-    def row(name: str, value: complex, total: bool = False) -> Row:
-        return Row((name, value.real, *([] if dc else [value.imag])), total=total)
-
-    own = [row(f"{s} alone", p) for s, p in zip(power.sources, power.own, strict=True)]
-    cross = [
-        row(f"{one} with {power.sources[k]}", power.cross[j][k])
-        for j, one in enumerate(power.sources)
-        for k in range(j + 1, len(power.sources))
-    ]
-    columns = (Column("part", key=True), Column("power", "W", family="power"), *reactive)
-    sums = [
-        row("sum of own powers", sum(power.own, 0j), total=True),
-        row("sum of cross terms", sum((c for r in power.cross for c in r), 0j)),
-        row("true total", power.total),
-        row("all at once", power.all_on),
-    ]
-    notes = (
-        "Powers do not superpose: the cross terms are what each pair of sources gives together.",
-        Check("difference of total and all at once", power.difference, CLOSURE_LIMIT).sentence(),
-    )
-    return [Table(title, subtitles, columns, (*own, *cross, *sums), notes, name=_name(q, at))]
 
 
 def _rms_table(network: Network, q: QuantityTerms) -> Table:

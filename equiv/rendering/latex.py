@@ -19,7 +19,7 @@ _SPECIALS = {
     "°": r"$^\circ$", "∠": r"$\angle$", "±": r"$\pm$", "×": r"$\times$", "·": r"$\cdot$",
     "≤": r"$\le$", "≥": r"$\ge$", "√": r"$\surd$", "−": "$-$", "–": "--", "—": "---",
     "Σ": r"$\Sigma$", "→": r"$\to$", "¹": "$^1$", "²": "$^2$", "³": "$^3$", "⁻": "$^-$",
-    "≈": r"$\approx$", "≠": r"$\neq$", "∞": r"$\infty$", "…": r"\ldots{}", "µ": r"$\mu$",
+    "≈": r"$\approx$", "≠": r"$\neq$", "∞": r"$\infty$", "…": r"\ldots{}", "µ": r"$\mu{}$",
     "\u2126": r"$\Omega$", "“": "``", "”": "''", "’": "'",
 }  # fmt: skip
 _GREEK = {
@@ -34,6 +34,8 @@ _ACCENTS = {
     "\u0327": "c", "\u030c": "v", "\u0304": "=", "\u0306": "u", "\u0307": ".", "\u030b": "H",
 }  # fmt: skip
 _PLAIN_WORDS = {"Ω": "ohm", "\u2126": "ohm", "µ": "u", "μ": "u", "∠": "@", "β": "beta", "±": "+-"}
+BROAD = 6
+"""Columns beyond which a table is set small, to fit a page."""
 _FIGURE = re.compile(r"(-?[\d.]+)(?:e([-+]\d+))?")
 
 
@@ -64,9 +66,9 @@ def _sign(sign: str) -> str:
     if words[:1] == ["GREEK"] and words[-1] in _GREEK and len(words) == 4:
         name = words[-1].replace("LAMDA", "LAMBDA")
         if words[1] == "SMALL":
-            return f"$\\{name.lower()}$"
+            return f"$\\{name.lower()}{{}}$"
         if words[-1] in _LARGE_GREEK:
-            return f"$\\{name.capitalize()}$"
+            return f"$\\{name.capitalize()}{{}}$"
     parts = unicodedata.normalize("NFD", sign)
     if len(parts) == 2 and parts[0].isascii() and parts[0].isalpha() and parts[1] in _ACCENTS:
         return f"\\{_ACCENTS[parts[1]]}{{{parts[0]}}}"
@@ -116,7 +118,10 @@ def _verbatim_sign(sign: str) -> str:
 
 
 def _tabular(columns: Sequence[Drawn], rows: Sequence[Row]) -> Iterator[str]:
-    yield r"\noindent\begin{tabular}{" + "".join("r" if c.right else "l" for c in columns) + "}"
+    ranged = "".join("r" if c.right else "l" for c in columns)
+    if len(columns) > BROAD:
+        yield r"{\footnotesize\setlength{\tabcolsep}{3pt}"
+    yield rf"\noindent\begin{{tabular}}{{{ranged}}}"
     yield _line([literal(column.name) for column in columns])
     if any(column.unit for column in columns):
         yield _line([figure(c.unit) if c.unit else "" for c in columns])
@@ -134,7 +139,7 @@ def _tabular(columns: Sequence[Drawn], rows: Sequence[Row]) -> Iterator[str]:
             yield r"\hline"
         above = row.total
         yield _line(cells)
-    yield r"\end{tabular}\par"
+    yield r"\end{tabular}\par" + ("}" if len(columns) > BROAD else "")
 
 
 def _cell(cell: Cell, text: str) -> str:

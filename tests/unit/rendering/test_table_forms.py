@@ -157,7 +157,7 @@ def test_latex_table():
         "\\hline\n"
         "a & $5.0000\\angle 53.13^\\circ$ & $120.04\\angle -1.43^\\circ\\,\\mathrm{V}$ \\\\\n"
         "{[}U+540D{]}{[}U+524D{]} & $0.0010\\angle 180.00^\\circ$ & "
-        "$1.0000\\angle 0.00^\\circ\\,\\mathrm{n\\Omega}$ \\\\\n"
+        "$1.0000\\angle 0.00^\\circ\\,\\mathrm{n\\Omega{}}$ \\\\\n"
         "x & -- & -- \\\\\n"
         "\\hline\n"
         "sum & $5.0000\\angle 180.00^\\circ$ & $0.0000\\angle 0.00^\\circ\\,\\mathrm{V}$ \\\\\n"
@@ -192,7 +192,7 @@ def test_latex_rows_have_as_many_cells_as_the_heading():
 
 def test_latex_letters():
     assert latex.literal("Åsa é Ω µ β_1 Δ 中") == (
-        "\\r{A}sa \\'{e} $\\Omega$ $\\mu$ $\\beta$\\_1 $\\Delta$ {[}U+4E2D{]}"
+        "\\r{A}sa \\'{e} $\\Omega{}$ $\\mu{}$ $\\beta{}$\\_1 $\\Delta{}$ {[}U+4E2D{]}"
     )
     assert latex.literal("λ Λ") == "$\\lambda$ $\\Lambda$"
     assert latex.literal("a--b") == "a-{}-b"
@@ -268,3 +268,7 @@ def test_json_never_has_what_json_does_not_know(value: float):
 def test_measures_in_a_real_column_keep_their_unit_column():
     table = Table("", columns=(Column("x", "A"),), rows=(Row((Measure(1.0, "V"),)), Row((2.0,))))
     assert csv_form.draw([table]) == "x,x unit\n1.0,V\n2.0,A\n"
+
+
+def test_latex_keeps_a_prefix_and_its_unit_apart():
+    assert latex.figure("5.0000 µA") == "$5.0000\\,\\mathrm{\\mu{}A}$"

@@ -1,0 +1,31 @@
+"""How tables of quantities are headed and named."""
+
+from __future__ import annotations
+
+from equiv.analyses.terms import FrequencyTerms, QuantityTerms
+from equiv.elements.element import Frequency
+from equiv.network import Network
+from equiv.units import write_value
+
+
+def frequency_words(frequency: Frequency, what: str = "phasors are rms") -> str:
+    """`DC`, or the frequency and what the phasors mean."""
+    if not frequency.omega:
+        return "DC"
+    return ", ".join(filter(None, (write_value(frequency.value, frequency.unit), what)))
+
+
+def titles_of(
+    network: Network, q: QuantityTerms, at: FrequencyTerms
+) -> tuple[str, tuple[str, ...]]:
+    """Title and subtitles: label, the quantity in words, frequency."""
+    heading = q.heading[0].upper() + q.heading[1:]
+    labels = (q.label[0].upper() + q.label[1:],) if q.label else ()
+    title = network.title or "Superposition"
+    return title, (*labels, f"{heading} ({q.quantity})", frequency_words(at.frequency))
+
+
+def name_of(q: QuantityTerms, at: FrequencyTerms) -> str:
+    """What tells this table from the others of the result."""
+    where = f" at {frequency_words(at.frequency, '')}" if at.frequency.omega else ""
+    return f"{q.quantity}{where}"
