@@ -194,7 +194,7 @@ def test_latex_letters():
     assert latex.literal("Åsa é Ω µ β_1 Δ 中") == (
         "\\r{A}sa \\'{e} $\\Omega{}$ $\\mu{}$ $\\beta{}$\\_1 $\\Delta{}$ {[}U+4E2D{]}"
     )
-    assert latex.literal("λ Λ") == "$\\lambda$ $\\Lambda$"
+    assert latex.literal("λ Λ") == "$\\lambda{}$ $\\Lambda{}$"
     assert latex.literal("a--b") == "a-{}-b"
 
 
