@@ -75,14 +75,14 @@ def port(network: Network, *ports: str | Port, progress: Progress = no_progress)
     Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load.
     Source: L. Thevenin, 1883; E. L. Norton, 1926; test sources: common practice.
     """
-    chosen = _chosen(network, ports)
+    chosen = chosen_ports(network, ports)
     equivalents: list[Equivalent] = []
     checks: list[Check] = []
     for number, frequency in enumerate(network.frequencies):
         progress("port equivalents", number, len(network.frequencies))
-        equivalent = _equivalent(network, chosen, frequency)
-        equivalents.append(equivalent)
-        checks += _checks(network, equivalent)
+        found = equivalent(network, chosen, frequency)
+        equivalents.append(found)
+        checks += _checks(network, found)
     neither = any(not e.thevenin and not e.norton for e in equivalents)
     cautions = [*about_network(network), *(c for e in equivalents for c in _cautions(e))]
     return PortEquivalent(
@@ -94,7 +94,8 @@ def port(network: Network, *ports: str | Port, progress: Progress = no_progress)
     )
 
 
-def _chosen(network: Network, ports: Sequence[str | Port]) -> tuple[Port, ...]:
+def chosen_ports(network: Network, ports: Sequence[str | Port]) -> tuple[Port, ...]:
+    """The ports that were named (names, pairs `a,b`, or ports); all declared ones if none were."""
     if not ports:
         if not network.ports:
             raise UsageError(
@@ -127,7 +128,8 @@ def find_port(network: Network, word: str) -> Port:
     return Port(word, plus, minus)
 
 
-def _equivalent(network: Network, ports: tuple[Port, ...], frequency: Frequency) -> Equivalent:
+def equivalent(network: Network, ports: tuple[Port, ...], frequency: Frequency) -> Equivalent:
+    """The equivalents of some ports at one frequency (see `port`); not proved yet."""
     number = len(ports)
     sources = [s.name for s in network.sources]
     u = source_values(network, frequency)
