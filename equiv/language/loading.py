@@ -1,0 +1,66 @@
+"""From a file or a text to a network."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+from decimal import localcontext
+from pathlib import Path
+
+from equiv.language.arguments import arguments
+from equiv.language.assembly import assembled
+from equiv.language.bulk import collector_paused
+from equiv.language.files import Text, decoded, digest, read_bytes
+from equiv.language.numerals import EXACT
+from equiv.language.reader import FEWEST_IN_BULK, Reader
+from equiv.network import Network, Origin
+
+
+def load(
+    path: str | Path, given: Mapping[str, str] | None = None, frequency: str | None = None
+) -> Network:
+    """The network of a file.
+
+    `given` replaces values of the file's parameters, `frequency` its frequency. Raises
+    `FileAccessError`, `NetworkFileError` with every mistake in the file, or `UsageError`.
+    """
+    path = Path(path)
+    data = read_bytes(path)
+    text = decoded(data, path.name)
+    network = read_text(Text(path.name, text), path, given, frequency)
+    return replace(network, origin=Origin(path.name, digest(data)))
+
+
+def parse(
+    text: str,
+    *,
+    name: str | None = None,
+    folder: Path | None = None,
+    given: Mapping[str, str] | None = None,
+    frequency: str | None = None,
+) -> Network:
+    """The network of a text; `read` statements need the folder that they start from."""
+    origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
+    path = folder / "text" if folder is not None else None
+    network = read_text(Text(name or "text", text), path, given, frequency)
+    return replace(network, origin=origin)
+
+
+def read_text(
+    text: Text,
+    path: Path | None = None,
+    given: Mapping[str, str] | None = None,
+    frequency: str | None = None,
+    in_bulk_from: int = FEWEST_IN_BULK,
+) -> Network:
+    """The network of a text; `path` is where it is, if it may read other files."""
+    with localcontext(EXACT), collector_paused():
+        values, override = arguments(given or {}, frequency)
+        if path is None:
+            reader = Reader(values, None, in_bulk_from)
+            reader.read(text)
+        else:
+            path = path.resolve()
+            reader = Reader(values, path.parent, in_bulk_from)
+            reader.read(text, path)
+        return assembled(reader, override)
