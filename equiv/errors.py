@@ -15,6 +15,7 @@ from __future__ import annotations
 import unicodedata
 from collections.abc import Iterable
 from enum import IntEnum
+from itertools import islice
 from typing import NamedTuple
 
 
@@ -112,12 +113,21 @@ class FileAccessError(EquivError):
 
 
 def nearest(word: str, known: Iterable[str]) -> str | None:
-    """A hint that names the known word most like another: `did you mean …?`."""
+    """A hint that names the known word most like another, however many are known."""
     from difflib import get_close_matches
 
-    near = get_close_matches(word, list(known), 1)
+    some = islice(known, _MOST_LOOKED_AT)
+    alike = [k for k in some if abs(len(k) - len(word)) <= 2 and len(word) <= _LONGEST_WORD]
+    if len(alike) > _MOST_COMPARED:
+        alike = [k for k in alike if k[0] == word[0]][:_MOST_COMPARED]
+    same = [k for k in alike if k.casefold() == word.casefold()]
+    near = get_close_matches(word, same or alike, 1)
     return f"did you mean {near[0]}?" if near else None
 
+
+_MOST_LOOKED_AT = 20_000
+_MOST_COMPARED = 500
+_LONGEST_WORD = 80
 
 # Characters that move the cursor, turn the writing direction, or start an escape sequence.
 _UNSAFE_CATEGORIES = frozenset({"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"})

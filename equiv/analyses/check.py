@@ -117,6 +117,10 @@ def _doubts(network: Network) -> Iterator[Caution]:
     loose = [n for n, times in touched.items() if times == 1 and n not in asked | {network.ground}]
     for node in loose[:_MANY]:
         yield Caution("loose-node", f"node {node} has one connection only")
+    for e in network.elements.values():
+        if e.kind == "opamp" and e.variant and "gain" not in e.variant:
+            words = f"{e.name} has {' and '.join(e.variant)} but no gain: an ideal one has neither"
+            yield Caution("no-gain", words)
     negative = [e for e in network.elements.values() if not _has_symbol(e) and _is_negative(e)]
     for e in negative[:_MANY]:
         value = write_value(e.value, e.fields[0].units[0])  # type: ignore[arg-type]

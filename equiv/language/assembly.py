@@ -6,11 +6,11 @@ from collections.abc import Callable
 from typing import TypeVar
 
 from equiv.elements.element import Frequency
-from equiv.errors import Diagnostic, NetworkFileError, UsageError
+from equiv.errors import Diagnostic, NetworkFileError, UsageError, nearest
 from equiv.language.blocks import Expansion, Frame, Use
 from equiv.language.drafts import Draft
 from equiv.language.fields import LaterFrequency
-from equiv.language.mistakes import AlreadyReported, Mistake, did_you_mean
+from equiv.language.mistakes import AlreadyReported, Mistake
 from equiv.language.reader import Reader
 from equiv.language.reports import Argument
 from equiv.language.resolve import Whole, check, check_override
@@ -76,7 +76,7 @@ def _unknown_given(name: str, known: list[str]) -> Diagnostic:
     return Diagnostic(
         "unknown-given",
         f"the file has no parameter called {name}",
-        hint=did_you_mean(name, known) or f"its parameters: {listed}",
+        hint=nearest(name, known) or f"its parameters: {listed}",
     )
 
 
