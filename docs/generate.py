@@ -100,6 +100,7 @@ def library() -> str:
     for name in ("load", "parse", "write", "check", "solve", "superpose", "isolate", "port"):
         function = getattr(equiv, name)
         signature = re.sub(r"'", "", str(inspect.signature(function)))
+        signature = re.sub(r"<function (\w+) at \w+>", r"\1", signature)
         signature = re.sub(r"equiv\.[\w.]+\.(\w+)", r"\1", signature)
         doc = inspect.getdoc(function) or ""
         parts.append(f"### `equiv.{name}`\n\n```python\n{name}{signature}\n```\n\n{doc}\n")

@@ -94,9 +94,8 @@ def sections(kind: type[Element]) -> dict[str, str]:
 
 
 def _page(kind: type[Element]) -> Table:
-    lines = [summary(kind), ""]
-    lines += [f"{name + ':':<10}{text}" for name, text in sections(kind).items()]
-    return Table(kind.kind, text="\n".join(lines) + "\n", name=kind.kind)
+    lines = tuple(f"{name + ':':<10}{text}" for name, text in sections(kind).items())
+    return Table(kind.kind, (summary(kind),), notes=lines, name=kind.kind)
 
 
 def statements() -> list[tuple[str, str]]:

@@ -82,7 +82,7 @@ def test_the_singular_gain_is_named() -> None:
 
 def test_planted_loops_are_named_in_large_random_networks() -> None:
     draw = random.Random(5)
-    for _ in range(20):
+    for _ in range(8):
         count = draw.randint(20, 60)
         lines = [
             f"resistor R{i} n{i} n{draw.randrange(i) if i else 'x'} {draw.uniform(1, 9):.3f} ohm"
