@@ -117,7 +117,9 @@ def nearest(word: str, known: Iterable[str]) -> str | None:
     from difflib import get_close_matches
 
     some = islice(known, _MOST_LOOKED_AT)
-    alike = [k for k in some if abs(len(k) - len(word)) <= 2 and len(word) <= _LONGEST_WORD]
+    alike = [k for k in some if abs(len(k) - len(word)) <= 2 and k != word]
+    if len(word) > _LONGEST_WORD:
+        return None
     if len(alike) > _MOST_COMPARED:
         alike = [k for k in alike if k[0] == word[0]][:_MOST_COMPARED]
     same = [k for k in alike if k.casefold() == word.casefold()]

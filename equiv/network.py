@@ -142,11 +142,12 @@ class Network:
     @cached_property
     def frequencies(self) -> tuple[Frequency, ...]:
         """The frequencies of the sources, ascending; the file's where there is no source."""
-        found: dict[float, Frequency] = {}
-        for source in self.sources:
-            at = self.frequency_of(source)
-            found.setdefault(round(at.omega, 9), at)
-        return tuple(found[w] for w in sorted(found)) or (self.frequency,)
+        found: list[Frequency] = []
+        written = dict.fromkeys(self.frequency_of(source) for source in self.sources)
+        for at in sorted(written, key=lambda at: at.omega):
+            if not found or not at.same_as(found[-1]):
+                found.append(at)
+        return tuple(found) or (self.frequency,)
 
     @cached_property
     def place_of(self) -> Mapping[str, tuple[str, int]]:
@@ -180,7 +181,8 @@ class Network:
         off = [s for s in self.sources if s.name not in kept]
         remarks = {s.name: f"switched off: {_what_it_was(s)}" for s in off}
         quiet = self.replacing({s.name: s.switched_off() for s in off})
-        return replace(quiet, comments={**self.comments, **remarks})
+        title = f"{self.title} ({name} alone)" if self.title else f"{name} alone"
+        return replace(quiet, title=title, comments={**self.comments, **remarks})
 
     def replacing(self, elements: Mapping[str, Element]) -> Network:
         """The network with some elements replaced by others under the same names."""
@@ -241,8 +243,10 @@ class Network:
 
 
 def _what_it_was(source: Element) -> str:
-    unit = source.fields[0].units[0]
-    return f"was {source.kind} {write_value(source.value, unit)}"  # type: ignore[arg-type]
+    value = write_value(source.value, source.fields[0].units[0])  # type: ignore[arg-type]
+    at = source.options.at
+    when = f" at {write_value(at.value, at.unit)}" if at else ""
+    return f"was {source.kind} {value}{when}"
 
 
 def _which_pair(pair: int) -> str:

@@ -225,7 +225,7 @@ def prefix_of(power: int) -> str:
 def say(value: complex, unit: str, digits: int = 5) -> str:
     """A quantity in a sentence: `-12.300 A`, or `8.5670 kA at -87.14 deg` where it is complex."""
     value = complex(value)
-    size = abs(value)
+    size = float(f"{abs(value):.{digits - 1}e}")  # rounded first: not 1000.00 mV
     power = engineering_power(size) if unit else 0
     scaled = size / 10.0**power
     whole = math.floor(math.log10(scaled)) + 1 if scaled else 1

@@ -117,14 +117,26 @@ def _doubts(network: Network) -> Iterator[Caution]:
     loose = [n for n, times in touched.items() if times == 1 and n not in asked | {network.ground}]
     for node in loose[:_MANY]:
         yield Caution("loose-node", f"node {node} has one connection only")
-    for e in network.elements.values():
-        if e.kind == "opamp" and e.variant and "gain" not in e.variant:
-            words = f"{e.name} has {' and '.join(e.variant)} but no gain: an ideal one has neither"
-            yield Caution("no-gain", words)
+    yield from _odd_elements(network)
     negative = [e for e in network.elements.values() if not _has_symbol(e) and _is_negative(e)]
     for e in negative[:_MANY]:
         value = write_value(e.value, e.fields[0].units[0])  # type: ignore[arg-type]
         yield Caution("negative-value", f"{e.name} is a negative {e.kind}: {value}")
+
+
+def _odd_elements(network: Network) -> Iterator[Caution]:
+    """Elements that are allowed and hardly meant."""
+    for e in network.elements.values():
+        if len(e.nodes) == 2 and e.nodes[0] == e.nodes[1]:
+            yield Caution("same-node", f"{e.name} has both its ends at node {e.nodes[0]}")
+        if e.kind == "opamp" and e.variant and "gain" not in e.variant:
+            words = f"{e.name} has {' and '.join(e.variant)} but no gain: an ideal one has neither"
+            yield Caution("no-gain", words)
+        if e.senses is not None and e.senses.what == "I" and e.senses.pair == 0:
+            sensed = network.elements[e.senses.names[0]]
+            if sensed.kind == "opamp" and "rin" not in sensed.variant:
+                words = f"{e.name} senses the input current of {sensed.name}, which is always zero"
+                yield Caution("senses-nothing", f"{words}; its output is I2:{sensed.name}")
 
 
 def _is_negative(element: Element) -> bool:

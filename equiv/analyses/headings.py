@@ -15,6 +15,11 @@ def frequency_words(frequency: Frequency, what: str = "phasors are rms") -> str:
     return ", ".join(filter(None, (write_value(frequency.value, frequency.unit), what)))
 
 
+def at_words(frequency: Frequency) -> str:
+    """` at 50 Hz`, or nothing at DC."""
+    return f" at {frequency_words(frequency, '')}" if frequency.omega else ""
+
+
 def titles_of(
     network: Network, q: QuantityTerms, at: FrequencyTerms
 ) -> tuple[str, tuple[str, ...]]:
@@ -27,5 +32,4 @@ def titles_of(
 
 def name_of(q: QuantityTerms, at: FrequencyTerms) -> str:
     """What tells this table from the others of the result."""
-    where = f" at {frequency_words(at.frequency, '')}" if at.frequency.omega else ""
-    return f"{q.quantity}{where}"
+    return f"{q.quantity}{at_words(at.frequency)}"

@@ -13,9 +13,11 @@ from collections.abc import Sequence
 from dataclasses import replace
 from decimal import Decimal
 
+import numpy as np
+
 from equiv.analyses.result import Check
-from equiv.analyses.subcircuits import Plan
-from equiv.analyses.terms import CLOSURE_LIMIT, FLOOR, Paths, Term
+from equiv.analyses.subcircuits import MOST_SOURCES, MOST_UNKNOWNS, Plan
+from equiv.analyses.terms import CLOSURE_LIMIT, Paths, Term
 from equiv.elements import KINDS
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
@@ -39,33 +41,42 @@ def paths_of(
     if dead.degenerate is not None:
         return terms
     h = dead.coefficients(quantity)
+    drives = _drives(dead, solver, plans)
+    few = len(plans) <= MOST_SOURCES and dead.system.size <= MOST_UNKNOWNS
+    # what is smaller than rounding in the dead network is no path
+    limits = dead.rounding(quantity, drives) if few else np.zeros(len(plans))
     number = dead.layout.source_number
+    controlled = [(c.name, number[c.name]) for c in network.controlled]
     out = []
-    for term, plan in zip(terms, plans, strict=True):
+    for k, (term, plan) in enumerate(zip(terms, plans, strict=True)):
         if term.contribution is None:
             out.append(term)
             continue
-        direct = sum((complex(h[number[m]]) * _value(solver, m) for m in plan.members), 0j)
-        outputs = {c.name: c.output for c in term.controlled} or _outputs(solver, plan)
-        through = tuple((name, complex(h[number[name]]) * y) for name, y in outputs.items())
+        parts = np.where(np.abs(h * drives[:, k]) > limits[k], h * drives[:, k], 0)
+        direct = complex(parts[[number[m] for m in plan.members]].sum())
+        through = tuple((name, complex(parts[n])) for name, n in controlled)
         out.append(replace(term, paths=Paths(direct, through)))
     return out
 
 
-def _value(solver: Solver, member: str) -> complex:
-    return complex(solver.u[solver.layout.source_number[member]])
+def _drives(dead: Solver, solver: Solver, plans: Sequence[Plan]) -> Numbers:
+    """The dead network's sources in each sub-circuit: its own, and the controlled ones' outputs."""
+    u = np.stack([plan.alone(solver.u) for plan in plans], axis=1)
+    number, own = dead.layout.source_number, solver.layout.source_number
+    drives = np.zeros((len(dead.u), len(plans)), np.result_type(u, solver.system.dtype))
+    for name, row in own.items():
+        drives[number[name]] = u[row]
+    for c in solver.network.controlled:
+        output = Quantity(c.output, (c.name,))
+        values = np.array(solver.values(output, u))
+        values = np.where(np.abs(values) > solver.rounding(output, u), values, 0)
+        drives[number[c.name]] = values if np.iscomplexobj(drives) else values.real
+    return drives
 
 
-def _outputs(solver: Solver, plan: Plan) -> dict[str, complex]:
-    """What every controlled source gives in a sub-circuit."""
-    u: Numbers = plan.alone(solver.u)
-    state = solver.state(u)
-    return {c.name: state.of(Quantity(c.output, (c.name,))) for c in solver.network.controlled}
-
-
-def paths_check(quantity: Quantity, terms: Sequence[Term], largest: float) -> Check:
+def paths_check(quantity: Quantity, terms: Sequence[Term]) -> Check:
     """That the paths of each term add up to it, relative to Σ|path| over all terms."""
     split = [(t, t.paths) for t in terms if t.paths is not None]
-    size = max(sum(p.gross for _, p in split), FLOOR * largest)
+    size = sum(p.gross for _, p in split)
     off = max((abs(p.total - t.number) for t, p in split), default=0.0)
     return Check(f"paths against terms, {quantity}", off / size if size else off, CLOSURE_LIMIT)

@@ -9,18 +9,26 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+import numpy as np
+
 from equiv.analyses.subcircuits import Plan
+from equiv.analyses.term_maker import Existence, Rounding, TermMaker
 from equiv.analyses.terms import FrequencyTerms, Power
 from equiv.elements.quantity import Quantity
+from equiv.equations.layout import Numbers
 from equiv.equations.solution import Solver, State
 from equiv.errors import Diagnostic, UsageError
-from equiv.network import Branch
 
 MOST_SOURCES = 400
 
 
 def power_at(
-    solver: Solver, state: State, plans: Sequence[Plan], quantity: Quantity
+    solver: Solver,
+    state: State,
+    plans: Sequence[Plan],
+    existence: Existence,
+    rounding: Rounding | None,
+    quantity: Quantity,
 ) -> FrequencyTerms:
     """The power an element absorbs (VA; its real part in W) as own and cross terms.
 
@@ -28,35 +36,36 @@ def power_at(
     """
     if len(plans) > MOST_SOURCES:
         raise UsageError(_too_many(quantity, len(plans)))
-    place = solver.network.locate(quantity)
-    assert isinstance(place, Branch)
-    pairs = range(len(solver.network.elements[place.element].pairs))
     count = len(plans)
-    own = [0j] * count
-    cross = [[0j] * count for _ in range(count)]
-    all_on = 0j
-    for pair in pairs:
-        v, i = (_parts(solver, plans, Quantity(w, quantity.names, pair)) for w in "VI")
-        for j in range(count):
-            own[j] += v[j] * i[j].conjugate()
-            for k in range(j + 1, count):
-                cross[j][k] += v[j] * i[k].conjugate() + v[k] * i[j].conjugate()
-        branch = solver.layout.branch_of(Branch(place.element, pair))
-        all_on += complex(state.voltages[branch]) * complex(state.currents[branch]).conjugate()
+    products = np.zeros((count, count), dtype=complex)
+    all_on, size = 0j, 0.0
+    for pair in range(len(solver.network.elements[quantity.names[0]].pairs)):
+        makers = [TermMaker(solver, Quantity(w, quantity.names, pair), rounding) for w in "VI"]
+        v, i = (np.array(maker.numbers(plans), dtype=complex) for maker in makers)
+        products += np.outer(v, i.conj())
+        volts, amperes = (maker.all_on(state) for maker in makers)
+        all_on += volts * amperes.conjugate()
+        size += float(np.abs(v).sum() * np.abs(i).sum())
+    reasons = existence.reasons(quantity)
+    exists = [reason is None for reason in reasons]
     power = Power(
         sources=tuple(plan.name for plan in plans),
-        own=tuple(own),
-        cross=tuple(map(tuple, cross)),
-        total=sum(own) + sum(c for row in cross for c in row),
+        own=tuple(complex(products[j, j]) if exists[j] else None for j in range(count)),
+        cross=tuple(
+            tuple(_cross(products, exists, j, k) for k in range(count)) for j in range(count)
+        ),
         all_on=all_on,
+        size=size,
+        reasons=tuple(reasons),
     )
     return FrequencyTerms(solver.frequency, (), all_on, power)
 
 
-def _parts(solver: Solver, plans: Sequence[Plan], quantity: Quantity) -> list[complex]:
-    """What each term gives to a voltage or current."""
-    h = solver.coefficients(quantity)
-    return [complex(h[plan.numbers] @ solver.u[plan.numbers]) for plan in plans]
+def _cross(products: Numbers, exists: Sequence[bool], j: int, k: int) -> complex | None:
+    """What a pair gives together; nothing on and below the diagonal."""
+    if k <= j:
+        return 0j
+    return complex(products[j, k] + products[k, j]) if exists[j] and exists[k] else None
 
 
 def _too_many(quantity: Quantity, count: int) -> Diagnostic:

@@ -17,8 +17,8 @@ def power_tables(network: Network, q: QuantityTerms, at: FrequencyTerms) -> list
     matrix = [
         Row(
             (
-                number + 1, source, *[""] * number, power.own[number].real,
-                *(cross.real for cross in power.cross[number][number + 1 :]),
+                number + 1, source, *[""] * number, _real(power.own[number]),
+                *map(_real, power.cross[number][number + 1 :]),
             )
         )
         for number, source in enumerate(power.sources)
@@ -28,19 +28,27 @@ def power_tables(network: Network, q: QuantityTerms, at: FrequencyTerms) -> list
         Column("source", key=True),
         *(Column(f"with {source}", "W", family="power") for source in power.sources),
     )
-    note = "On the diagonal what a source gives alone; beside it what each pair gives together."
+    notes = ["On the diagonal what a source gives alone; beside it what each pair gives together."]
+    notes += [
+        f"{source}: none alone; {reason}"
+        for source, reason in zip(power.sources, power.reasons, strict=True)
+        if reason
+    ]
     return [
-        Table(title, subtitles, columns, tuple(matrix), (note,), name=name_of(q, at)),
+        Table(title, subtitles, columns, tuple(matrix), tuple(notes), name=name_of(q, at)),
         _power_sums(q, at, power),
     ]
 
 
+def _real(value: complex | None) -> float | None:
+    return None if value is None else value.real
+
+
 def _power_sums(q: QuantityTerms, at: FrequencyTerms, power: Power) -> Table:
     dc = not at.frequency.omega
-    cross = sum((c for row in power.cross for c in row), 0j)
     parts = [
-        ("sum of own powers", sum(power.own, 0j), False),
-        ("sum of cross terms", cross, False),
+        *([("sum of own powers", power.own_sum, False)] if power.complete else []),
+        *([("sum of cross terms", power.cross_sum, False)] if power.complete else []),
         ("true total", power.total, True),
         ("all at once", power.all_on, True),
     ]

@@ -5,17 +5,15 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any, ClassVar, NamedTuple
 
-import numpy as np
-
 from equiv.analyses.cautions import about_network, about_solver
 from equiv.analyses.closing import closing_table
-from equiv.analyses.headings import frequency_words
+from equiv.analyses.headings import at_words, frequency_words
 from equiv.analyses.result import Caution, Check, Result, finite, pair
 from equiv.analyses.tables import Cell, Column, Row, Table
 from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
-from equiv.equations.solution import Solver, State, all_on
+from equiv.equations.solution import CLEANED_UP_TO, Solver, State, all_on
 from equiv.errors import Diagnostic, ExitStatus, NoUniqueSolutionError
 from equiv.network import Network, Progress, no_progress
 
@@ -83,7 +81,8 @@ def solve(network: Network, progress: Progress = no_progress) -> Solution:
     refusal = ExitStatus.DONE
     for number, frequency in enumerate(network.frequencies):
         progress("solution", number, len(network.frequencies))
-        solver, state = all_on(network, frequency)
+        solver, state = all_on(network, frequency, _form(network))
+        solver.require_solution()
         found = _frequency_state(solver, state)
         if not any(value is not None for _, value in found.nodes) and found.nodes:
             raise NoUniqueSolutionError(
@@ -92,8 +91,7 @@ def solve(network: Network, progress: Progress = no_progress) -> Solution:
         if solver.degenerate is not None:
             refusal = ExitStatus.NO_UNIQUE_SOLUTION
         states.append(found)
-        where = f" at {frequency_words(frequency, '')}" if frequency.omega else ""
-        checks.append(Check(f"power balance{where}", found.balance, CLOSURE_LIMIT))
+        checks.append(Check(f"power balance{at_words(frequency)}", found.balance, CLOSURE_LIMIT))
         cautions += about_solver(solver)
     return Solution(
         network,
@@ -102,6 +100,12 @@ def solve(network: Network, progress: Progress = no_progress) -> Solution:
         refusal=refusal,
         frequencies=tuple(states),
     )
+
+
+def _form(network: Network) -> str:
+    """The branch-current form where its rounding is bounded; the quicker one elsewhere."""
+    unknowns = len(network.nodes) + sum(len(e.pairs) for e in network.elements.values())
+    return "branch-current" if unknowns <= CLEANED_UP_TO else "nodal"
 
 
 def _frequency_state(solver: Solver, state: State) -> FrequencyState:
@@ -137,11 +141,11 @@ def _tables(network: Network, f: FrequencyState) -> list[Table]:
         (f"Node voltages over {network.ground}", *subtitles),
         (Column("node", key=True), Column("voltage", "V", family="voltage")),
         nodes,
-        name="nodes",
+        name=f"nodes{at_words(f.frequency)}",
     )
     columns = [
         Column("element", key=True),
-        Column("kind"),
+        *([Column("kind")] if dc else []),
         Column("voltage", "V"),
         Column("current", "A"),
         Column("power absorbed", "W", family="power"),
@@ -157,7 +161,7 @@ def _tables(network: Network, f: FrequencyState) -> list[Table]:
             Row(
                 (
                     name,
-                    e.kind,
+                    *([e.kind] if dc else []),
                     _cell(e.voltage, dc),
                     _cell(e.current, dc),
                     real,
@@ -168,7 +172,7 @@ def _tables(network: Network, f: FrequencyState) -> list[Table]:
         )
     note = "Voltage: first node over second. Current: first node to second inside the element."
     return [node_table, Table("Elements", subtitles, tuple(columns), tuple(rows), (note,),
-                              name="elements")]  # fmt: skip
+                              name=f"elements{at_words(f.frequency)}")]  # fmt: skip
 
 
 def _role(e: ElementState) -> str:
@@ -182,15 +186,18 @@ def _role(e: ElementState) -> str:
 
 def _data(f: FrequencyState) -> dict[str, Any]:
     rows: dict[str, dict[str, Any]] = {}
+    powers: dict[str, complex | None] = {}
     for e in f.elements:
-        values = {"voltage": pair(e.voltage), "current": pair(e.current), "power": pair(e.power)}
+        values = {"voltage": pair(e.voltage), "current": pair(e.current)}
         if e.pair == 0:
-            rows[e.name] = {"name": e.name, "kind": e.kind, **values}
-            continue
-        rows[e.name].update({f"{key}{e.pair + 1}": value for key, value in values.items()})
-        powers = [s.power for s in f.elements if s.name == e.name]
-        whole = None if None in powers else complex(np.sum(powers))  # type: ignore[arg-type]
-        rows[e.name]["power"] = pair(whole)
+            powers[e.name] = e.power
+            rows[e.name] = {"name": e.name, "kind": e.kind, **values, "power": None}
+        else:
+            rows[e.name].update({f"{key}{e.pair + 1}": value for key, value in values.items()})
+            before = powers[e.name]
+            powers[e.name] = None if before is None or e.power is None else before + e.power
+    for name, power in powers.items():
+        rows[name]["power"] = pair(power)
     return {
         "hertz": f.frequency.hertz,
         "nodes": {name: pair(v) for name, v in f.nodes},

@@ -21,12 +21,19 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.equations.solution import Solver, State
 from equiv.errors import EquivError
-from equiv.network import Network, Progress
+from equiv.network import Branch, Network, Progress
 
 MOST_SOURCES = 200
 MOST_UNKNOWNS = 2000
+MOST_DECOMPOSED = 4000
+"""Unknowns times sources up to which singular sub-circuits are each decomposed."""
 SAMPLE = 8
+HOW_CHECKED = {
+    "each": "each term found again in its own sub-circuit, branch-current form",
+    "none": "terms were not found again by a second method (--check none)",
+}
 _SEED = 20240901
+_NOTHING = 1e-14
 
 
 class Plan(NamedTuple):
@@ -60,11 +67,15 @@ class SubCircuits:
         frequency: Frequency,
         plans: Sequence[Plan],
         check: str,
-        unknowns: int,
+        solver: Solver,
         progress: Progress,
     ) -> SubCircuits:
         """Solve every sub-circuit, where that is what is wanted."""
+        unknowns = solver.system.size
         small = len(plans) <= MOST_SOURCES and unknowns <= MOST_UNKNOWNS
+        if solver.degenerate is not None and unknowns * len(plans) > MOST_DECOMPOSED:
+            # a decomposition for each would take minutes: they share one
+            small = False
         if check == "none" or (check == "auto" and not small):
             how = "none" if check == "none" else "sample"
             return cls(network, frequency, plans, how, (None,) * len(plans))
@@ -73,6 +84,17 @@ class SubCircuits:
             progress("sub-circuits", number, len(plans))
             states.append(_alone(network, frequency, plan))
         return cls(network, frequency, plans, "each", tuple(states))
+
+    @property
+    def how_in_words(self) -> str:
+        """Which terms are checked, and how."""
+        if self.how == "sample":
+            count = min(2 * SAMPLE, len(self.plans))
+            return (
+                f"{count} of {len(self.plans)} terms (the {SAMPLE} largest, and others drawn with "
+                "a fixed seed) found again in branch-current form"
+            )
+        return HOW_CHECKED[self.how]
 
     def checks(
         self, quantity: Quantity, contributions: Sequence[complex | None]
@@ -105,10 +127,9 @@ class SubCircuits:
         return Solver(self.network, self.frequency, "branch-current")
 
 
-def _alone(network: Network, frequency: Frequency, plan: Plan) -> State | None:
-    """The solution of one sub-circuit, or None where it has none."""
-    solver = Solver(network.isolate(plan.name), frequency, "branch-current")
-    return solver.state() if solver.consistent(solver.u) else None
+def _alone(network: Network, frequency: Frequency, plan: Plan) -> State:
+    """The solution of one sub-circuit (the nearest where it has none)."""
+    return Solver(network.isolate(plan.name), frequency, "branch-current").state()
 
 
 def why_not(network: Network, frequency: Frequency, name: str) -> str:
@@ -122,21 +143,32 @@ def why_not(network: Network, frequency: Frequency, name: str) -> str:
 
 def controlled_states(network: Network, state: State) -> tuple[ControlledState, ...]:
     """What every controlled source senses and gives in a solution."""
+    layout = state.system.layout
+    nodes = np.append(state.x[: layout.node_count], 0)
+    largest = {
+        "V": np.abs(state.voltages).max(initial=0),
+        "I": np.abs(state.currents).max(initial=0),
+    }
     found = []
-    size = max(np.abs(state.x).max(initial=0.0), 1e-300)
     for element in network.controlled:
         assert element.senses is not None
-        sensed = state.of(element.senses)
+        if element.senses.what == "V":
+            first, second = layout.nodes_of(element.senses)
+            sensed = complex(nodes[first] - nodes[second])
+        else:
+            sensed = complex(state.currents[layout.branch_of_quantity(element.senses)])
+        branch = layout.branch_of(Branch(element.name, 0))
+        output = (state.voltages if element.output == "V" else state.currents)[branch]
         found.append(
             ControlledState(
                 name=element.name,
                 kind=element.kind,
                 senses=str(element.senses),
                 sensed=sensed,
-                output=state.of(Quantity(element.output, (element.name,))),
+                output=complex(output),
                 unit="V" if element.output == "V" else "A",
                 sensed_unit=element.senses.unit,
-                reversed=bool(sensed.real < -1e-14 * size),
+                reversed=bool(sensed.real < -_NOTHING * largest[element.senses.what]),
             )
         )
     return tuple(found)

@@ -8,10 +8,11 @@ from typing import Any, ClassVar, Literal
 
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
-from equiv.analyses.finder import TermFinder, at_words
+from equiv.analyses.finder import TermFinder
+from equiv.analyses.headings import at_words
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.superpose_data import quantity_data
-from equiv.analyses.superpose_tables import askable_tables, quantity_tables
+from equiv.analyses.superpose_tables import askable, askable_tables, quantity_tables
 from equiv.analyses.tables import Table
 from equiv.analyses.terms import (
     CLOSURE_LIMIT,
@@ -21,7 +22,7 @@ from equiv.analyses.terms import (
     QuantityTerms,
 )
 from equiv.elements.quantity import Quantity
-from equiv.errors import ExitStatus, NoUniqueSolutionError
+from equiv.errors import Diagnostic, ExitStatus, NoUniqueSolutionError
 from equiv.language import quantity as read_quantity
 from equiv.network import Find, Network, NodePair, Progress, no_progress
 
@@ -36,7 +37,7 @@ class Superposition(Result):
 
     quantities: tuple[QuantityTerms, ...] = ()
     detail: bool = False
-    how_checked: str = "each"
+    how_checked: str = ""
 
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """A table a quantity and frequency; on request one a sub-circuit, and one of paths."""
@@ -53,7 +54,10 @@ class Superposition(Result):
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object."""
-        return {"quantities": [quantity_data(q) for q in self.quantities]}
+        data: dict[str, Any] = {"quantities": [quantity_data(q) for q in self.quantities]}
+        if not self.quantities:
+            data["askable"] = [word for word, _ in askable(self.network)]
+        return data
 
 
 def superpose(
@@ -83,17 +87,19 @@ def superpose(
     if not finds:
         return Superposition(network)
     work = TermFinder(network, by, paths, check, progress)
-    tables: dict[Find, list[FrequencyTerms]] = {find: [] for find in finds}
-    for frequency in network.frequencies:
-        for find, terms in zip(finds, work.at(frequency, finds), strict=True):
-            if terms is not None:
-                tables[find].append(terms)
-    found = tuple(_quantity(network, f, tables[f]) for f in finds if tables[f])
+    columns = [work.at(frequency, finds) for frequency in network.frequencies]
+    tables = dict(zip(finds, zip(*columns, strict=True), strict=True))
+    refusals = [f.refusal for terms in tables.values() for f in terms if f.refusal]
+    found = tuple(
+        _quantity(network, find, terms)
+        for find, terms in tables.items()
+        if not all(f.refusal for f in terms)
+    )
     if not found:
-        raise NoUniqueSolutionError(work.refusals)
-    cautions = [Caution(d.code, d.message) for d in work.refusals]
+        raise NoUniqueSolutionError([Diagnostic("no-unique-solution", r) for r in refusals])
+    cautions = [Caution("no-unique-solution", refusal) for refusal in refusals]
     cautions += [*about_network(network, [q.heading for q in found]), *work.cautions]
-    refusal = ExitStatus.NO_UNIQUE_SOLUTION if work.refusals else ExitStatus.DONE
+    refusal = ExitStatus.NO_UNIQUE_SOLUTION if refusals else ExitStatus.DONE
     if not refusal and any(not f.complete for q in found for f in q.frequencies):
         refusal = ExitStatus.DOES_NOT_EXIST
     cautions += [c for q in found for f in q.frequencies for c in _cancellation(q, f)]
@@ -117,7 +123,7 @@ def _finds(network: Network, quantities: Sequence[str | Quantity]) -> tuple[Find
     return tuple(Find(q, labels.get(q)) for q in dict.fromkeys(asked))
 
 
-def _quantity(network: Network, find: Find, terms: list[FrequencyTerms]) -> QuantityTerms:
+def _quantity(network: Network, find: Find, terms: Sequence[FrequencyTerms]) -> QuantityTerms:
     place, q = network.locate(find.quantity), find.quantity
     if isinstance(place, NodePair):
         positive = f"{place.first} over {place.second}"
@@ -129,6 +135,8 @@ def _quantity(network: Network, find: Find, terms: list[FrequencyTerms]) -> Quan
 
 
 def _checks(q: QuantityTerms, at: FrequencyTerms) -> list[Check]:
+    if at.refusal:
+        return []
     name = f"{q.quantity}{at_words(at.frequency)}"
     checks = []
     if at.complete:
@@ -143,7 +151,7 @@ def _checks(q: QuantityTerms, at: FrequencyTerms) -> list[Check]:
 def _cancellation(q: QuantityTerms, at: FrequencyTerms) -> list[Caution]:
     if at.power or not at.complete or not at.arithmetic_sum:
         return []
-    if at.cancels_to_nothing:
+    if at.terms_cancel:
         return [Caution("cancellation", f"the terms of {q.quantity} cancel: their sum is zero")]
     if (at.cancellation or 0) <= NOTABLE_CANCELLATION:
         return []

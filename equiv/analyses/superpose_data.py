@@ -21,6 +21,12 @@ def quantity_data(q: QuantityTerms) -> dict[str, Any]:
 
 
 def _frequency_data(at: FrequencyTerms) -> dict[str, Any]:
+    if at.refusal:
+        return {
+            "hertz": at.frequency.hertz, "terms": [], "total": None, "all_on": None,
+            "difference": None, "arithmetic_sum": None, "cancellation": None,
+            "reason": at.refusal,
+        }  # fmt: skip
     if at.power:
         power = at.power
         return {
@@ -30,19 +36,21 @@ def _frequency_data(at: FrequencyTerms) -> dict[str, Any]:
                 "own": [pair(p) for p in power.own],
                 "cross": [[pair(c) for c in row] for row in power.cross],
                 "total": pair(power.total),
+                **({} if power.complete else {"reasons": list(power.reasons)}),
             },
             "all_on": pair(power.all_on),
-            "difference": power.difference,
+            "difference": power.difference if power.complete else None,
         }
     rows = zip(at.terms, at.running_sums, strict=True)
     return {
         "hertz": at.frequency.hertz,
         "terms": [_term_data(at, term, running) for term, running in rows],
+        # a term that does not exist leaves no sum, but the quantity itself is unique
         "total": pair(at.total),
         "all_on": pair(at.all_on),
-        "difference": at.difference,
-        "arithmetic_sum": finite(at.arithmetic_sum),
-        "cancellation": at.cancellation,
+        "difference": at.difference if at.complete else None,
+        "arithmetic_sum": finite(at.arithmetic_sum) if at.complete else None,
+        "cancellation": at.cancellation if at.complete else None,
     }
 
 

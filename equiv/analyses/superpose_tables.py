@@ -19,12 +19,6 @@ from equiv.analyses.terms import (
 from equiv.network import Network
 from equiv.units import say
 
-HOW_CHECKED = {
-    "each": "each term found again in its own sub-circuit, branch-current form",
-    "sample": "the largest terms and some drawn ones found again in branch-current form",
-    "none": "terms were not found again by a second method (--check none)",
-}
-
 
 def quantity_tables(
     network: Network, q: QuantityTerms, detail: bool, how: str, digits: int
@@ -32,6 +26,10 @@ def quantity_tables(
     """A table a frequency, with the sub-circuits and the paths where they were asked for."""
     tables = []
     for at in q.frequencies:
+        if at.refusal:
+            title, subtitles = titles_of(network, q, at)
+            tables.append(Table(title, subtitles, notes=(f"{at.refusal}.",), name=name_of(q, at)))
+            continue
         if at.power:
             tables.extend(power_tables(network, q, at))
             continue
@@ -154,10 +152,10 @@ def _notes(q: QuantityTerms, at: FrequencyTerms, how: str, digits: int) -> list[
                 "largest difference of a term and its check", at.worst_term, TERM_LIMIT
             ).sentence()
         )
-    notes.append(f"Check: {HOW_CHECKED[how]}.")
+    notes.append(f"Check: {how}.")
     if at.complete:
         notes.append(f"Arithmetic sum of the magnitudes: {say(at.arithmetic_sum, q.unit, digits)}.")
-    if at.complete and at.cancels_to_nothing and at.arithmetic_sum:
+    if at.terms_cancel:
         notes.append(
             "The terms cancel: their sum is below the closure limit, so shares mean nothing."
         )
@@ -242,21 +240,25 @@ def _rms_table(network: Network, q: QuantityTerms) -> Table:
                  (), columns, tuple(rows), (note,), name=f"rms of {q.quantity}")  # fmt: skip
 
 
-def askable_tables(network: Network) -> tuple[Table, ...]:
-    """What can be asked of a network, where nothing was."""
-    elements = list(network.elements.values())
-    rows = [
+def askable(network: Network) -> list[tuple[str, str]]:
+    """Every quantity of nodes and elements, and what it is."""
+    words = (("V", "voltage of"), ("I", "current in"), ("P", "power absorbed by"))
+    return [
+        *((f"V:{node}", f"voltage of node {node} over {network.ground}") for node in network.nodes),
         *(
-            Row((f"V:{node}", f"voltage of node {node} over {network.ground}"))
-            for node in network.nodes
-        ),
-        *(
-            Row((f"{what}:{e.name}", f"{word} {e.kind} {e.name}"))
-            for e in elements
+            (f"{what}:{e.name}", f"{word} {e.kind} {e.name}")
+            for e in network.elements.values()
             if e.pairs
-            for what, word in (("V", "voltage of"), ("I", "current in"), ("P", "power absorbed by"))
+            for what, word in words
         ),
     ]
+
+
+def askable_tables(network: Network) -> tuple[Table, ...]:
+    """What can be asked of a network, where nothing was."""
+    if not network.elements:
+        return (Table("The network is empty: nothing can be asked.", name="quantities"),)
     notes = ("Also V:a,b for the voltage of node a over node b; V2: and I2: for second pairs.",)
     columns = (Column("quantity", key=True), Column("what it is"))
-    return (Table("What can be asked", (), columns, tuple(rows), notes, name="quantities"),)
+    rows = Table.rows_of(askable(network))
+    return (Table("What can be asked", (), columns, rows, notes, name="quantities"),)

@@ -17,7 +17,7 @@ CLOSURE_LIMIT = 1e-9
 TERM_LIMIT = 1e-9
 """How far a term may be from its sub-circuit, relative to the term."""
 FLOOR = 1e-3
-"""Smaller values are judged against this part of Σ|term|, or of the network's largest value."""
+"""A smaller term is judged against this part of Σ|term|."""
 NOTABLE_CANCELLATION = 10.0
 
 
@@ -99,17 +99,39 @@ class Power:
     """
 
     sources: tuple[str, ...]
-    own: tuple[complex, ...]
-    cross: tuple[tuple[complex, ...], ...]
-    total: complex
+    own: tuple[complex | None, ...]
+    cross: tuple[tuple[complex | None, ...], ...]
     all_on: complex
+    size: float
+    """Σ|voltage term| · Σ|current term|: what differences are relative to."""
+    reasons: tuple[str | None, ...] = ()
+    """Why a source alone has no power: its sub-circuit has no solution."""
+
+    @property
+    def complete(self) -> bool:
+        """Whether every source alone has a solution."""
+        return not any(self.reasons)
+
+    @property
+    def own_sum(self) -> complex:
+        """The sum of the own powers."""
+        return sum((p for p in self.own if p is not None), 0j)
+
+    @property
+    def cross_sum(self) -> complex:
+        """The sum of the cross terms."""
+        return sum((c for row in self.cross for c in row if c is not None), 0j)
+
+    @property
+    def total(self) -> complex:
+        """Own and cross terms; all sources at once where one of them does not exist."""
+        return self.own_sum + self.cross_sum if self.complete else self.all_on
 
     @property
     def difference(self) -> float:
-        """The sum of own and cross terms against all sources at once, relative to Σ|…|."""
-        parts = [*self.own, *(c for row in self.cross for c in row)]
-        size = sum(map(abs, parts))
-        return abs(sum(parts) - self.all_on) / size if size else abs(self.all_on)
+        """The sum of own and cross terms against all sources at once, relative to `size`."""
+        off = abs(self.total - self.all_on)
+        return off / self.size if self.size else off
 
 
 @dataclass(frozen=True)
@@ -120,12 +142,14 @@ class FrequencyTerms:
     terms: tuple[Term, ...]
     all_on: complex
     power: Power | None = None
-    largest: float = 0.0
-    """The largest value of the quantity's unit in the network: what rounding is measured by."""
+    refusal: str | None = None
+    """Why the quantity has no value at this frequency, in words."""
 
     @cached_property
     def complete(self) -> bool:
         """Whether every term exists."""
+        if self.power:
+            return self.power.complete
         return all(term.contribution is not None for term in self.terms)
 
     @cached_property
@@ -148,17 +172,18 @@ class FrequencyTerms:
         if not self.complete:
             return 0.0
         off = abs(self.total - self.all_on)
-        return off / self.size if self.size else off
+        return off / self.arithmetic_sum if self.arithmetic_sum else off
 
     @property
-    def size(self) -> float:
-        """What differences are relative to: Σ|term|, unless that is itself only rounding."""
-        return max(self.arithmetic_sum, FLOOR * self.largest)
+    def terms_cancel(self) -> bool:
+        """Whether several terms make a sum of nothing."""
+        several = sum(1 for term in self.terms if term.number) > 1
+        return self.complete and several and self.cancels_to_nothing
 
     @cached_property
     def cancels_to_nothing(self) -> bool:
         """Whether the total is below the closure limit: its shares mean nothing."""
-        return abs(self.total) <= CLOSURE_LIMIT * self.size
+        return abs(self.total) <= CLOSURE_LIMIT * self.arithmetic_sum
 
     @cached_property
     def cancellation(self) -> float | None:
@@ -186,6 +211,8 @@ class FrequencyTerms:
     @property
     def agrees(self) -> bool:
         """Whether the sum closes and the terms are those of their sub-circuits."""
+        if self.refusal:
+            return True
         return self.difference <= CLOSURE_LIMIT and (self.worst_term or 0.0) <= TERM_LIMIT
 
     @cached_property
@@ -198,7 +225,7 @@ class FrequencyTerms:
     @cached_property
     def worst_term(self) -> float | None:
         """The largest relative difference of a term from its sub-circuit; None if not checked."""
-        floor = FLOOR * max(self.arithmetic_sum, self.largest)
+        floor = FLOOR * self.arithmetic_sum
         off = [
             abs(t.contribution - t.check) / max(abs(t.contribution), abs(t.check), floor)
             if max(abs(t.contribution), abs(t.check), floor)
@@ -222,8 +249,11 @@ class QuantityTerms:
 
     @property
     def rms(self) -> float | None:
-        """√Σ|total|² over the frequencies, where there are several (a power simply adds)."""
-        if len(self.frequencies) < 2:
+        """√Σ|total|² over the frequencies, where there are several (a power simply adds).
+
+        None where the quantity has no value at one of them.
+        """
+        if len(self.frequencies) < 2 or any(f.refusal for f in self.frequencies):
             return None
         if self.quantity.what == "P":
             return math.fsum(f.total.real for f in self.frequencies)

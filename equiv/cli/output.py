@@ -56,7 +56,9 @@ def print_text(text: str, environment: Environment) -> None:
 def require_writable(path: Path, force: bool) -> None:
     """Complain of an output file before the work rather than after it."""
     try:
-        there, is_file, has_folder = path.exists(), path.is_file(), path.parent.is_dir()
+        # a link whose target is missing is there all the same
+        there = path.exists() or path.is_symlink()
+        is_file, has_folder = path.is_file() or not path.exists(), path.parent.is_dir()
     except OSError as error:
         raise _refusal(path, f"cannot be written: {error.strerror}") from None
     if there and not is_file:
@@ -101,4 +103,4 @@ def _move(beside: Path, target: Path, force: bool) -> None:
 
 
 def _refusal(path: Path, reason: str, hint: str | None = None) -> FileAccessError:
-    return FileAccessError(Diagnostic("cannot-write", f"{path.name} {reason}", hint=hint))
+    return FileAccessError(Diagnostic("cannot-write", f"{path.name or path} {reason}", hint=hint))

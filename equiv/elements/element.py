@@ -45,6 +45,10 @@ class Frequency(NamedTuple):
         """The angular frequency in rad/s."""
         return float(self.value) if self.unit != "Hz" else float(self.value) * 6.283185307179586
 
+    def same_as(self, other: Frequency) -> bool:
+        """Whether two frequencies are one: equal but for the rounding of a change of unit."""
+        return abs(self.omega - other.omega) <= 1e-12 * max(self.omega, other.omega)
+
 
 class Parameters(NamedTuple):
     """The named values of a kind that has several, or a choice of one among several."""

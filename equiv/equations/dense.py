@@ -84,6 +84,9 @@ class DenseFactor:
     @staticmethod
     def _refined(scaled: Numbers, a: Numbers, before: Any, after: Any, right: Numbers) -> Numbers:
         before, after = (v if right.ndim == 1 else v[:, None] for v in (before, after))
-        x = after * np.linalg.solve(scaled, before * right)
-        rest = right - a @ x
-        return np.asarray(x + after * np.linalg.solve(scaled, before * rest))
+        try:
+            x = after * np.linalg.solve(scaled, before * right)
+            rest = right - a @ x
+            return np.asarray(x + after * np.linalg.solve(scaled, before * rest))
+        except np.linalg.LinAlgError:
+            raise IllConditionedError from None

@@ -109,9 +109,12 @@ def _loops(laws: Laws, holds: NDArray[np.bool_]) -> Iterator[Finding]:
     layout = laws.layout
     above: dict[int, list[tuple[int, int, int]]] = {}
     root = list(range(layout.node_count + 1))
+    seen = 0
     for branch in np.flatnonzero(holds).tolist():
         tail, head = int(layout.tail[branch]), int(layout.head[branch])
         if _find(root, tail) == _find(root, head):
+            if (seen := seen + 1) > MOST_FINDINGS:
+                return
             path = _path(above, head, tail)
             yield Finding("loop", (branch, *(b for b, _ in path)), (1, *(sign for _, sign in path)))
             continue

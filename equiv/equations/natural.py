@@ -12,24 +12,33 @@ from __future__ import annotations
 
 import numpy as np
 
+from equiv.elements import Element
+from equiv.elements.element import Parameters
 from equiv.equations.dense import balance, matrix
 from equiv.equations.layout import Layout, Numbers
 from equiv.equations.system import System
 from equiv.network import Network
+from equiv.units import Symbol, as_number
 
 LARGEST = 500
 """Unknowns up to which natural frequencies are looked for."""
 _AGREEMENT = 1e-5
 _MARGIN = 1e-7
+_NEIGHBOURS = 1e-2
 _REACH = 1e4
 _FAR = 1e9
 """The s (rad/s) that C is read off at: far out, so that G takes none of its digits."""
 _DYNAMIC = ("inductor", "capacitor")
+_ACTIVE = ("opamp", "twoport", "nport")
 
 
 def unstable_frequencies(network: Network) -> list[complex]:
-    """Natural frequencies (rad/s) with a positive real part, the fastest growing first."""
-    if not any(e.kind in _DYNAMIC for e in network.elements.values()):
+    """Natural frequencies (rad/s) with a positive real part, the fastest growing first.
+
+    A network without anything active in it has none.
+    """
+    elements = network.elements.values()
+    if not any(e.kind in _DYNAMIC for e in elements) or not any(map(_is_active, elements)):
         return []
     layout = Layout(network)
     still = System(layout, "nodal", 0.0)
@@ -37,47 +46,71 @@ def unstable_frequencies(network: Network) -> list[complex]:
         return []
     g = matrix(still)
     c = (matrix(System(layout, "nodal", _FAR)) - g) / _FAR
-    found = [s for s in natural_frequencies(g, c) if s.real > _MARGIN * abs(s)]
-    return sorted(found, key=lambda s: -s.real)
+    found = natural_frequencies(g, c)
+    return sorted((s for s in found if s.real > _margin(s, found)), key=lambda s: -s.real)
+
+
+def _is_active(element: Element) -> bool:
+    """Whether an element can give more than it takes (independent sources do not count)."""
+    if element.role == "controlled" or element.kind in _ACTIVE:
+        return True
+    value = element.value
+    if element.role != "passive" or value is None or isinstance(value, Parameters | Symbol):
+        return False
+    return complex(as_number(value)).real < 0
+
+
+def _margin(s: complex, found: list[complex]) -> float:
+    """How far right a frequency must lie: several equal ones scatter about their place."""
+    spread = [abs(s - other) for other in found if abs(s - other) < _NEIGHBOURS * abs(s)]
+    return max(_MARGIN * abs(s), max(spread))
 
 
 def natural_frequencies(g: Numbers, c: Numbers) -> list[complex]:
     """The finite s (rad/s) for which G + s C is singular, s = 0 left out."""
+    if not c.any():
+        return []
+    rows, columns = balance(c)
+    left, values, right = np.linalg.svd(c * rows[:, None] * columns)
+    rank = int((values > 1e-13 * values.max()).sum())
+    factors = left[:, :rank] * values[:rank] / rows[:, None], right[:rank] / columns
     found: list[complex] = []
     for rate in _rates(g, c):
-        first, second = (_by_shift(g, c, rate * factor) for factor in (1.37, 0.61))
+        first, second = (_by_shift(g, c, factors, rate * factor) for factor in (1.37, 0.61))
         for s in first:
             if not rate / _REACH < abs(s) < rate * _REACH:
                 continue
             agrees = second.size and np.abs(second - s).min() <= _AGREEMENT * abs(s)
-            known = any(abs(s - other) <= _AGREEMENT * abs(s) for other in found)
+            known = any(abs(s - other) <= _MARGIN * abs(s) for other in found)
             if agrees and not known:
                 found.append(complex(s))
+        if len(found) >= rank:
+            break
     return found
 
 
 def _rates(g: Numbers, c: Numbers) -> Numbers:
-    """Shifts (rad/s) that cover the rates which the entries can make."""
+    """Shifts (rad/s) that cover the rates which the entries can make, from the middle outwards."""
     conducts, stores = np.abs(g[g != 0]), np.abs(c[c != 0])
     if not conducts.size or not stores.size:
         return np.empty(0)
     low = np.log10(conducts.min() / stores.max())
     high = np.log10(conducts.max() / stores.min())
-    count = int(min(12, max(2, np.ceil((high - low) / 3) + 1)))
-    return np.logspace(low, high, count)
+    count = int(min(12, max(3, np.ceil((high - low) / 3) + 1)))
+    rates = np.logspace(low, high, count)
+    return rates[np.argsort(np.abs(np.arange(count) - (count - 1) / 2), kind="stable")]
 
 
-def _by_shift(g: Numbers, c: Numbers, shift: float) -> Numbers:
+def _by_shift(g: Numbers, c: Numbers, factors: tuple[Numbers, Numbers], shift: float) -> Numbers:
     """The finite s found from one shift."""
+    e, f = factors
     shifted = g + shift * c
     rows, columns = balance(shifted)
-    shifted = shifted * rows[:, None] * columns
-    left, values, right = np.linalg.svd(shift * c * rows[:, None] * columns)
-    rank = int((values > 1e-12 * values.max(initial=0.0)).sum())
     try:
-        inner = right[:rank] @ np.linalg.solve(shifted, left[:, :rank] * values[:rank])
+        inner = np.linalg.solve(shifted * rows[:, None] * columns, rows[:, None] * e)
     except np.linalg.LinAlgError:
         return np.empty(0)
+    inner = shift * (f @ (columns[:, None] * inner))
     if not np.isfinite(inner).all():
         return np.empty(0)
     mu = np.linalg.eigvals(inner)

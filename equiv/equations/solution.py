@@ -12,7 +12,7 @@ import numpy as np
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
 from equiv.equations import words
-from equiv.equations.degenerate import LARGEST, Degenerate
+from equiv.equations.degenerate import LARGEST, Degenerate, OutOfRangeError
 from equiv.equations.dense import DenseFactor
 from equiv.equations.factor import Factor, IllConditionedError, factorise
 from equiv.equations.graph import findings
@@ -59,16 +59,15 @@ class State:
         row = self.system.row(quantity)
         return complex(row.state @ self.x + row.source @ self.u)
 
-    def largest(self, what: str) -> float:
-        """The largest voltage (V) or current (A) of any branch: what rounding is measured by."""
-        values = self.voltages if what == "V" else self.currents
-        return float(np.abs(values).max(initial=0.0))
-
     def balance(self) -> float:
         """|Σ v·i*| / Σ|v·i*| over all branches (B. D. H. Tellegen, 1952); 0 where nothing flows."""
         powers = self.voltages * np.conj(self.currents)
-        size = float(np.abs(powers).sum())
-        return float(abs(powers.sum())) / size if size else 0.0
+        size, off = float(np.abs(powers).sum()), float(abs(powers.sum()))
+        if off <= _BALANCE * size:
+            return off / size if size else 0.0
+        # where no power flows at all, rounding is judged by what the currents were made of
+        gross = float(self.system.gross_powers(self.x, self.u).sum())
+        return off / gross if off <= _ROUNDINGS * _EPSILON * gross else off / size
 
 
 class Solver:
@@ -90,6 +89,7 @@ class Solver:
         self.took_over = False
         self.degenerate: Degenerate | None = None
         self.reasons: tuple[str, ...] = ()
+        self._absolute_inverse: Numbers | None = None
         found = findings(self.system.laws)
         if found:
             self.reasons = tuple(words.of_finding(f, self.layout, self.u) for f in found)
@@ -120,7 +120,10 @@ class Solver:
             self.system = System(self.layout, self.form, self.s)
         if self.system.size > LARGEST:
             raise NoUniqueSolutionError(self._complaints())
-        self.degenerate = Degenerate(self.system)
+        try:
+            self.degenerate = Degenerate(self.system)
+        except OutOfRangeError:
+            raise NoUniqueSolutionError(_OUT_OF_RANGE) from None
         self._factor = self.degenerate
         if not self.reasons:
             branches, nodes = self.degenerate.culprits()
@@ -133,7 +136,10 @@ class Solver:
 
     def _solved(self, how: str, right: Numbers) -> Numbers:
         try:
-            return getattr(self._factor, how)(right)  # type: ignore[no-any-return]
+            solution: Numbers = getattr(self._factor, how)(right)
+            if not np.isfinite(solution).all():
+                raise NoUniqueSolutionError(_OUT_OF_RANGE)
+            return solution
         except IllConditionedError:
             if self.took_over:
                 raise NoUniqueSolutionError(self._complaints()) from None
@@ -159,11 +165,14 @@ class Solver:
         """Whether these values of the sources give a solution."""
         return self.degenerate is None or self.degenerate.consistent(u)
 
-    def require_unique(self, quantity: Quantity) -> None:
-        """Raise NoUniqueSolutionError where a quantity is not determined."""
-        if not self.unique(quantity):
-            message = f"{quantity} has no unique value: {'; '.join(self.reasons)}"
-            raise NoUniqueSolutionError(Diagnostic("no-unique-solution", message))
+    def determines(self, quantity: Quantity, u: Numbers) -> bool:
+        """Whether these sources give a quantity a value.
+
+        They do even where they contradict each other, in a part that does not touch it.
+        """
+        if self.degenerate is None or self.degenerate.consistent(u):
+            return True
+        return not self.degenerate.reaches(self.row(quantity), u)
 
     def coefficients(self, quantity: Quantity) -> Numbers:
         """What one unit of each source gives to a voltage or current (one transposed solve).
@@ -178,14 +187,29 @@ class Solver:
         return self._retry(work)
 
     def state(self, u: Numbers | None = None) -> State:
-        """The solution for given values of the sources (all of them on, if none are given)."""
+        """The solution for given values of the sources (all of them on, if none are given).
+
+        In the branch-current form of a small network what is only rounding is made zero.
+        """
         values = self.u if u is None else u
 
         def work() -> State:
             x = self._solved("solve", self.system.excitation(values))
+            if self.form == "branch-current" and self.system.size <= CLEANED_UP_TO:
+                x = self._cleaned(x, values)
             return State(self.system, x, values)
 
         return self._retry(work)
+
+    def _cleaned(self, x: Numbers, u: Numbers) -> Numbers:
+        """The solution with zeros for unknowns that are not above their rounding."""
+        if self._absolute_inverse is None:
+            self._absolute_inverse = np.abs(self._solved("solve", np.eye(self.system.size)))
+        bound = self._absolute_inverse @ self.system.magnitudes(x, u)
+        bound = bound + _EPSILON * np.abs(x).max(initial=0.0)
+        if self.degenerate is not None:
+            bound = bound + self.degenerate.spreads(x)
+        return np.where(np.abs(x) > _ROUNDINGS * _EPSILON * bound, x, 0)
 
     def values(self, quantity: Quantity, columns: Numbers) -> list[complex]:
         """A voltage or current for each column of source values, solved in blocks."""
@@ -197,26 +221,56 @@ class Solver:
 
         return [complex(value) for value in self._retry(work)]
 
+    def rounding(self, quantity: Quantity, columns: Numbers) -> Numbers:
+        """What rounding alone can make of a quantity, for each column of source values.
+
+        |λ|ᵀ(|A||x| + |B||u|) times a few units of the last digit, λ the adjoint solution: the
+        forward bound of a solution that is backward stable row by row (N. J. Higham, Accuracy
+        and Stability of Numerical Algorithms, 2nd ed., 2002, section 7.2).
+        """
+
+        def work() -> Numbers:
+            row = self.row(quantity)
+            adjoint = np.abs(self._solved("solve_transposed", row.state))
+            x = self._solved("solve", self.system.excitation(columns))
+            size, state = np.abs(x), np.abs(row.state)
+            bound = adjoint @ self.system.magnitudes(x, columns) + state @ size
+            # one refinement leaves the square of the rounding of the largest unknown
+            bound = bound + _EPSILON * state.sum() * size.max(axis=0, initial=0.0)
+            if self.degenerate is not None:
+                bound = bound + self.degenerate.spread(row.state, x)
+            return np.asarray(_ROUNDINGS * _EPSILON * bound)
+
+        return self._retry(work)
+
     def require_solution(self) -> None:
         """Raise NoUniqueSolutionError where all the sources together have no solution."""
         if not self.consistent(self.u):
             raise NoUniqueSolutionError(self._complaints())
 
 
+_OUT_OF_RANGE = Diagnostic(
+    "out-of-range",
+    "the network's values are beyond what floating point can hold",
+    hint="values between 1e-100 and 1e100 are safe",
+)
 _BALANCE = 1e-9
+_EPSILON = 2.0**-53
+CLEANED_UP_TO = 500
+"""Unknowns up to which the rounding of each is bounded (by an inverse)."""
+_ROUNDINGS = 32
+"""Units of the last digit that rounding may cost a solution."""
 
 
-def all_on(network: Network, frequency: Frequency) -> tuple[Solver, State]:
+def all_on(network: Network, frequency: Frequency, form: str = "nodal") -> tuple[Solver, State]:
     """All sources at once, in the nodal form unless its powers do not balance.
 
-    Errors: NoUniqueSolutionError where all the sources together have no solution.
+    Where they contradict each other the state is the nearest one; ask `determines`.
     """
-    solver = Solver(network, frequency)
-    solver.require_solution()
+    solver = Solver(network, frequency, form)
     state = solver.state()
     if solver.form == "nodal" and not state.balance() <= _BALANCE:
         solver = Solver(network, frequency, "branch-current")
-        solver.took_over = True
         state = solver.state()
     return solver, state
 

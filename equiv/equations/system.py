@@ -19,7 +19,6 @@ import numpy as np
 from equiv.elements.quantity import Quantity
 from equiv.equations.laws import Laws, Terms
 from equiv.equations.layout import Integers, Layout, Numbers
-from equiv.network import Branch
 
 
 class Triplets(NamedTuple):
@@ -117,9 +116,41 @@ class System:
 
     def row(self, quantity: Quantity) -> Row:
         """The row of a voltage or current quantity."""
-        if quantity.what == "V":
-            return self.voltage_row(*self.layout.nodes_of(quantity))
-        return self.current_row(self.layout.branch_of_quantity(quantity))
+        if quantity.what == "I":
+            return self.current_row(self.layout.branch_of_quantity(quantity))
+        ends = self.layout.nodes_of(quantity)
+        if self.form == "branch-current":
+            by_law = self._by_law(*ends)
+            if by_law is not None:
+                return by_law
+        return self.voltage_row(*ends)
+
+    def _by_law(self, first: int, second: int) -> Row | None:
+        """The voltage of two nodes as R·i of a resistor that joins them, if one does.
+
+        A difference of node voltages would lose the digits of a small one.
+        """
+        tail, head = self.layout.tail, self.layout.head
+        for one, other, sign in ((first, second, 1), (second, first, -1)):
+            for branch in np.flatnonzero((tail == one) & (head == other)).tolist():
+                impedance = self._impedance(branch)
+                if impedance is not None:
+                    row = self.current_row(branch)
+                    return Row(sign * impedance * row.state, sign * impedance * row.source)
+        return None
+
+    def _impedance(self, branch: int) -> complex | None:
+        """z of a branch whose whole law is y·v = z·y·i with some y that is not zero."""
+        across, through = self.laws.across, self.laws.through
+        a, t = (np.flatnonzero(terms.branch == branch) for terms in (across, through))
+        if len(a) != 1 or len(t) != 1 or np.any(self.laws.drive.branch == branch):
+            return None
+        same = across.first[a[0]] == self.layout.tail[branch]
+        own = same and across.second[a[0]] == self.layout.head[branch]
+        if not own or through.first[t[0]] != branch or not across.coefficient[a[0]]:
+            return None
+        z = -through.coefficient[t[0]] / across.coefficient[a[0]]
+        return complex(z) if np.iscomplexobj(z) else float(z)
 
     def voltage_row(self, first: int, second: int) -> Row:
         """The voltage of one node over another (-1 is the ground)."""
@@ -159,16 +190,32 @@ class System:
         out[own] = x[self.unknown[own]]
         return out
 
+    def gross_powers(self, x: Numbers, u: Numbers) -> Numbers:
+        """Every branch's Σ|voltage of a node| · Σ|term of the current| (VA), nothing cancelled."""
+        currents = np.zeros(self.layout.branch_count)
+        grounded, drive = np.abs(np.append(x, 0)), self.laws.drive
+        for terms, columns in self._columns():
+            for column, _ in columns:
+                np.add.at(currents, terms.branch, np.abs(terms.coefficient) * grounded[column])
+        np.add.at(currents, drive.branch, np.abs(drive.coefficient * u[drive.first]))
+        own = self.unknown >= 0
+        currents[own] = grounded[self.unknown[own]]
+        nodes = np.append(grounded[: self.layout.node_count], 0)
+        return np.asarray((nodes[self.layout.tail] + nodes[self.layout.head]) * currents)
+
     def voltages(self, x: Numbers) -> Numbers:
         """Every branch's voltage from a solution, first node over second (V)."""
         grounded = np.append(x[: self.layout.node_count], 0)
         return np.asarray(grounded[self.layout.tail] - grounded[self.layout.head])
 
-    def branch_row(self, place: Branch) -> tuple[Row, Row]:
-        """The voltage and the current of a branch, for its power."""
-        branch = self.layout.branch_of(place)
-        ends = int(self.layout.tail[branch]), int(self.layout.head[branch])
-        return self.voltage_row(*ends), self.current_row(branch)
+    def magnitudes(self, x: Numbers, u: Numbers) -> Numbers:
+        """|A||x| + |B||u|: what rounding in the equations is proportional to."""
+        out = np.zeros((self.size, *x.shape[1:]))
+        size, drive = np.abs(x), np.abs(u)
+        across = (slice(None),) + (None,) * (x.ndim - 1)
+        np.add.at(out, self.a.rows, np.abs(self.a.values)[across] * size[self.a.columns])
+        np.add.at(out, self.b.rows, np.abs(self.b.values)[across] * drive[self.b.columns])
+        return out
 
 
 def _triplets(parts: list[tuple[Integers, Integers, Numbers]]) -> Triplets:

@@ -2,11 +2,9 @@
 
 from __future__ import annotations
 
-import numpy as np
-
 from equiv.equations.graph import Finding
 from equiv.equations.layout import Layout, Numbers
-from equiv.units import write_value
+from equiv.units import say, write_value
 
 _MOST_NAMES = 8
 
@@ -31,13 +29,13 @@ def of_finding(finding: Finding, layout: Layout, u: Numbers) -> str:
     if _all(names, layout, ("current",)):
         forms = "form" if len(names) > 1 else "alone forms"
         what = f"{listed(names)} {forms} a cut-set of current sources around node{many} {nodes}"
-        return what + (f" whose currents disagree by {_amount(off)} A" if off else "")
+        return what + (f" whose currents disagree by {_amount(off, 'A')}" if off else "")
     if not any(layout.network.elements[name].role == "source" for name in names):
         return (
             f"node{many} {nodes}: nothing ties this part to {layout.network.ground} "
             f"(only {listed(names)}, which {'carry' if len(names) > 1 else 'carries'} no current)"
         )
-    rest = f", whose currents disagree by {_amount(off)} A" if off else ""
+    rest = f", whose currents disagree by {_amount(off, 'A')}" if off else ""
     return f"{listed(names)} cut node{many} {nodes} off from {layout.network.ground}{rest}"
 
 
@@ -45,7 +43,7 @@ def _loop(names: list[str], off: float, layout: Layout) -> str:
     sources = [n for n in names if layout.network.elements[n].kind == "voltage"]
     if len(names) == 1:
         what = f"{names[0]} joins a node to itself"
-        return what + (f" with a voltage of {_amount(off)} V" if off else "")
+        return what + (f" with a voltage of {_amount(off, 'V')}" if off else "")
     if len(sources) == len(names):
         what = f"{listed(names)} form a loop of voltage sources"
     elif sources:
@@ -53,7 +51,7 @@ def _loop(names: list[str], off: float, layout: Layout) -> str:
     else:
         what = f"{listed(names)} form a loop of shorts"
     if off:
-        return f"{what} whose voltages disagree by {_amount(off)} V"
+        return f"{what} whose voltages disagree by {_amount(off, 'V')}"
     return f"{what}: how the current divides between them is not determined"
 
 
@@ -117,5 +115,7 @@ def _disagreement(finding: Finding, layout: Layout, u: Numbers, output: str) -> 
     return abs(total) if abs(total) > 1e-9 * size else 0.0
 
 
-def _amount(value: float) -> str:
-    return f"{np.format_float_positional(value, precision=6, unique=False, fractional=False, trim='-')}"
+def _amount(value: float, unit: str) -> str:
+    """A disagreement: `2 V`, `1.333 uA`."""
+    number, _, rest = say(value, unit, 4).partition(" ")
+    return f"{number.rstrip('0').rstrip('.') if '.' in number else number} {rest}"

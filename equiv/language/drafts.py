@@ -17,7 +17,7 @@ from equiv.language.fields import FieldValue, LaterFrequency, LaterValue, ratio_
 from equiv.language.limits import MOST_NAME
 from equiv.language.mistakes import Mistake
 from equiv.language.numerals import UNITS
-from equiv.language.options import OPTIONS, Chosen
+from equiv.language.options import OPTIONS, Chosen, option_of
 from equiv.language.quantities import read_quantity
 from equiv.language.scope import Scope
 from equiv.language.words import Statement, Words
@@ -135,7 +135,7 @@ def _read_rest(
             if senses is not None:
                 raise Mistake("given-twice", "senses is given twice", place)
             senses = _read_sensed(words, kind)
-        elif text in OPTIONS:
+        elif option_of(text):
             chosen.read(words, kind)
         else:
             raise _unexpected(words, kind)

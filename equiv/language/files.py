@@ -79,7 +79,7 @@ def read_bytes(path: Path, spent: int = 0) -> bytes:
     except (OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or "it is not the name of a file"
         raise FileAccessError(
-            Diagnostic("cannot-read", f"cannot read {path.name}: {reason}")
+            Diagnostic("cannot-read", f"cannot read {path.name or path}: {reason}")
         ) from None
     if len(data) > most:
         raise FileAccessError(

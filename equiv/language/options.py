@@ -71,6 +71,13 @@ OPTIONS: dict[str, str] = {name: reader.__doc__ or "" for name, reader in _READE
 """One line of help for each option."""
 
 
+def option_of(text: str) -> str | None:
+    """The option that a word begins: its name, or a tolerance by its own sign (±1%)."""
+    if text in _READERS:
+        return text
+    return "tolerance" if re.match(r"(±|\+-)[0-9.(]", text) else None
+
+
 class Chosen:
     """The options of one statement, while they are read."""
 
@@ -82,19 +89,22 @@ class Chosen:
 
     def read(self, words: Words, kind: type[Element]) -> None:
         """Read the option whose name stands next."""
-        word = words.take("an option")
-        if word.text in self.given:
-            raise Mistake("given-twice", f"{word.text} is given twice", word.place)
-        if word.text in _OF_SOURCES and kind.role != "source":
+        word = words.next
+        name = option_of(word.text) or word.text
+        if name in self.given:
+            raise Mistake("given-twice", f"{name} is given twice", word.place)
+        if name in _OF_SOURCES and kind.role != "source":
             raise Mistake(
                 "sources-only",
-                f"{word.text} is for independent sources; {kind.kind} is none",
+                f"{name} is for independent sources; {kind.kind} is none",
                 word.place,
             )
-        value = _READERS[word.text](words)
+        if name == word.text:
+            words.take("an option")
+        value = _READERS[name](words)
         if isinstance(value, LaterFrequency):
             self.at = value
-        self.given[word.text] = value
+        self.given[name] = value
 
     def options(self) -> Options:
         """The options; a frequency that is not known yet is left out."""

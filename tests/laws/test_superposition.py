@@ -25,11 +25,11 @@ def test_terms_sum_to_the_total_and_checks_pass(seed: int, ac: bool) -> None:
     solution = equiv.solve(network)
     for q in result.quantities:
         (at,) = q.frequencies
-        close(sum(t.number for t in at.terms), at.all_on, at.size)
+        close(sum(t.number for t in at.terms), at.all_on, at.arithmetic_sum)
         if q.quantity.what == "I":
             state = next(e for e in solution.first.elements if e.name == q.quantity.names[0])
             assert state.current is not None
-            close(at.total, state.current, at.size)
+            close(at.total, state.current, at.arithmetic_sum)
 
 
 @seeded
@@ -44,7 +44,7 @@ def test_each_term_is_its_isolated_subcircuit(seed: int, ac: bool) -> None:
         alone = equiv.superpose(equiv.parse(text), *asked, check="none")
         for whole, part in zip(result.quantities, alone.quantities, strict=True):
             term = whole.frequencies[0].terms[k]
-            close(term.number, part.frequencies[0].total, whole.frequencies[0].size)
+            close(term.number, part.frequencies[0].total, whole.frequencies[0].arithmetic_sum)
 
 
 @seeded
@@ -65,7 +65,7 @@ def test_scaling_a_source_scales_its_term_alone(seed: int, ac: bool, factor: flo
     before = equiv.superpose(equiv.parse(maker.text), *asked, check="none")
     after = equiv.superpose(equiv.parse("\n".join(scaled)), *asked, check="none")
     for one, other in zip(before.quantities, after.quantities, strict=True):
-        size = one.frequencies[0].size
+        size = one.frequencies[0].arithmetic_sum
         for t, u in zip(one.frequencies[0].terms, other.frequencies[0].terms, strict=True):
             close(u.number, t.number * (factor if t.source == name else 1), size)
 
@@ -87,7 +87,7 @@ def test_renaming_and_reordering_change_nothing(seed: int, ac: bool) -> None:
     ]
     after = equiv.superpose(equiv.parse(renamed), *new_asked)
     for one, other in zip(before.quantities, after.quantities, strict=True):
-        size = one.frequencies[0].size
+        size = one.frequencies[0].arithmetic_sum
         terms = {t.source: t for t in other.frequencies[0].terms}
         for t in one.frequencies[0].terms:
             close(t.number, terms[t.source].number, size)
@@ -105,7 +105,7 @@ def test_paths_add_up_to_their_terms(seed: int, ac: bool) -> None:
             assert [name for name, _ in term.paths.through] == [
                 c.name for c in equiv.parse(maker.text).controlled
             ]
-            close(term.paths.total, term.number, q.frequencies[0].size)
+            close(term.paths.total, term.number, q.frequencies[0].arithmetic_sum)
 
 
 @seeded
@@ -155,8 +155,8 @@ def test_groups_add_their_members(ac: bool) -> None:
     for one, other in zip(single.quantities, grouped.quantities, strict=True):
         (term,) = other.frequencies[0].terms
         assert term.members == tuple(s.name for s in network.sources)
-        close(term.number, one.frequencies[0].total, one.frequencies[0].size)
+        close(term.number, one.frequencies[0].total, one.frequencies[0].arithmetic_sum)
         assert term.check is not None
-        close(term.number, term.check, one.frequencies[0].size)
+        close(term.number, term.check, one.frequencies[0].arithmetic_sum)
         for part, alone in zip(term.parts, one.frequencies[0].terms, strict=True):
             close(part.number, alone.number)
