@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass, field, replace
 from decimal import Decimal
-from functools import cached_property
+from functools import cached_property, partial
+from operator import methodcaller
 from typing import NamedTuple
 
 from equiv.elements import Element
@@ -47,6 +48,7 @@ class Origin(NamedTuple):
 
 
 NOWHERE = Origin()
+Again = Callable[[Mapping[str, str]], "Network"]
 
 
 class NodePair(NamedTuple):
@@ -85,6 +87,8 @@ class Network:
     places: tuple[tuple[str, int], ...] = ()
     """File and line of each element, in the order of `elements`; empty if not from text."""
     origin: Origin = NOWHERE
+    again: Again | None = field(default=None, repr=False)
+    """Reads it again with other values of its parameters (as text); None if not from text."""
 
     def __eq__(self, other: object) -> bool:
         """Same elements and statements; places, origin and comments do not count."""
@@ -186,11 +190,14 @@ class Network:
 
     def replacing(self, elements: Mapping[str, Element]) -> Network:
         """The network with some elements replaced by others under the same names."""
-        return replace(self, elements={**self.elements, **elements})
+        again = _then(self.again, methodcaller("replacing", elements))
+        return replace(self, elements={**self.elements, **elements}, again=again)
 
     def with_elements(self, elements: Iterable[Element]) -> Network:
         """The network with more elements."""
-        return replace(self, elements={**self.elements, **{e.name: e for e in elements}}, places=())
+        more = {e.name: e for e in elements}
+        again = _then(self.again, methodcaller("with_elements", tuple(more.values())))
+        return replace(self, elements={**self.elements, **more}, places=(), again=again)
 
     def locate(self, quantity: Quantity) -> NodePair | Branch:
         """What a quantity is about: two nodes, or a terminal pair of an element."""
@@ -242,6 +249,17 @@ class Network:
         return self.elements[branch.element].pair_nodes(branch.pair, self.ground)
 
 
+def _then(again: Again | None, change: Callable[[Network], Network]) -> Again | None:
+    """Reading again, and making a change to what was read."""
+    return None if again is None else partial(_changed, again, change)
+
+
+def _changed(
+    again: Again, change: Callable[[Network], Network], given: Mapping[str, str]
+) -> Network:
+    return change(again(given))
+
+
 def _what_it_was(source: Element) -> str:
     value = write_value(source.value, source.fields[0].units[0])  # type: ignore[arg-type]
     at = source.options.at
@@ -250,7 +268,8 @@ def _what_it_was(source: Element) -> str:
 
 
 def _which_pair(pair: int) -> str:
-    return " (first terminal pair)" if pair == 0 else " (second terminal pair)"
+    names = ("first terminal pair", "second terminal pair")
+    return f" ({names[pair] if pair < len(names) else f'terminal pair {pair + 1}'})"
 
 
 def _two_meanings(name: str) -> Diagnostic:

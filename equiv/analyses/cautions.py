@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable
+from contextlib import suppress
 
 from equiv.analyses.result import Caution
 from equiv.equations.natural import unstable_frequencies
 from equiv.equations.solution import Solver
+from equiv.errors import UsageError
 from equiv.network import Network
 
 _DUTY_WORDS = ("fault", "short circuit", "short-circuit", "arc flash", "prospective")
@@ -22,10 +24,29 @@ DUTY = Caution(
 def about_network(network: Network, headings: Iterable[str] = ()) -> list[Caution]:
     """Warnings that belong to every result of a network."""
     found = [Caution("unstable", _unstable(s)) for s in unstable_frequencies(network)[:1]]
+    found += interpolated(network)
     words = [network.title, *network.notes, *headings, *network.elements]
     words += [find.label or "" for find in network.finds]
     if any(duty in text.lower() for text in words for duty in _DUTY_WORDS):
         found.append(DUTY)
+    return found
+
+
+def interpolated(network: Network) -> list[Caution]:
+    """Parameters from a file that are taken between two of its points.
+
+    A frequency outside its points is left out: only a solution there is refused.
+    """
+    tables = {e.table.file: e.table for e in network.elements.values() if e.table}
+    found = []
+    for frequency in network.frequencies:
+        for table in tables.values():
+            with suppress(UsageError):
+                between = table.between_words(frequency.hertz)
+                if between is None:
+                    continue
+                message = f"{table.file} is taken linear between its points at {between}"
+                found.append(Caution("interpolated", message))
     return found
 
 

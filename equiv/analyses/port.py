@@ -3,30 +3,36 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from decimal import Decimal
-from typing import Any, ClassVar
+from dataclasses import dataclass, replace
+from typing import Any, ClassVar, NamedTuple
 
-import numpy as np
-
-from equiv.analyses.cautions import about_network
+from equiv.analyses.cautions import about_network, interpolated
 from equiv.analyses.closing import closing_table
 from equiv.analyses.headings import frequency_words
+from equiv.analyses.port_choice import chosen_ports
+from equiv.analyses.port_choice import find_port as find_port
+from equiv.analyses.port_equivalent import equivalent as equivalent
+from equiv.analyses.port_form_proof import proved
+from equiv.analyses.port_form_tables import form_data, form_tables
+from equiv.analyses.port_forms import PortForm, existing, in_form
+from equiv.analyses.port_frequencies import Given, frequencies_of, network_at
 from equiv.analyses.port_proof import Equivalent, blackman, three_loads
+from equiv.analyses.port_references import Ohms, checked_form, references_of
 from equiv.analyses.port_tables import port_data, port_tables
+from equiv.analyses.port_tests import with_tests as with_tests
+from equiv.analyses.port_touchstone import touchstone_sources, touchstone_text
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.tables import Table
 from equiv.analyses.terms import CLOSURE_LIMIT
-from equiv.elements import KINDS
-from equiv.elements.element import Frequency, Options
-from equiv.elements.quantity import Quantity
-from equiv.equations.layout import Numbers
-from equiv.equations.solution import Solver, source_values
-from equiv.errors import Diagnostic, EquivError, ExitStatus, UsageError
+from equiv.elements.element import Frequency
+from equiv.errors import Diagnostic, DoesNotExistError, ExitStatus
 from equiv.network import Network, Port, Progress, no_progress
 
-TEST = "test source at {}"
-"""The name of a test source: no name of a file has blanks in it."""
+_UNPROVED = Caution(
+    "unproved",
+    "under no loads that were tried does the network have a solution of its own: the parameters "
+    "follow from its equations, and are not proved in another way",
+)
 
 
 @dataclass(frozen=True)
@@ -39,6 +45,8 @@ class PortEquivalent(Result):
     command: ClassVar[str] = "port"
 
     equivalents: tuple[Equivalent, ...] = ()
+    forms: tuple[PortForm, ...] = ()
+    """The parameters of each equivalent in the form that was asked for, if one was."""
 
     @property
     def first(self) -> Equivalent:
@@ -48,7 +56,11 @@ class PortEquivalent(Result):
 
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """Terms, equivalents, test sources and proof, for each frequency."""
-        tables = [t for e in self.equivalents for t in port_tables(self.network, e)]
+        if self.forms:
+            pairs = zip(self.equivalents, self.forms, strict=True)
+            tables = [t for e, form in pairs for t in form_tables(self.network, e, form)]
+        else:
+            tables = [t for e in self.equivalents for t in port_tables(self.network, e)]
         remark = (
             "An equivalent stands for the terminals alone: losses and efficiency inside it are "
             "not those of the network."
@@ -57,155 +69,140 @@ class PortEquivalent(Result):
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object; `frequencies` holds all of them where there are several."""
-        data = port_data(self.first)
-        if len(self.equivalents) > 1:
-            data["frequencies"] = [port_data(e) for e in self.equivalents]
-        return data
+        found = [port_data(e) for e in self.equivalents]
+        for data, e, form in zip(found, self.equivalents, self.forms, strict=False):
+            data |= form_data(e, form)
+        first = found[self.equivalents.index(self.first)]
+        return {**first, "frequencies": found} if len(found) > 1 else first
+
+    def touchstone(self) -> str:
+        """The parameters as a Touchstone file, version 1.1: s, or z or y normalised to R.
+
+        Errors: UsageError for another form, or for references that differ.
+        """
+        return touchstone_text(self.network, self.equivalents, self.forms)
+
+    def touchstone_sources(self) -> dict[str, Any]:
+        """The source vectors, which a Touchstone file cannot carry, as an object for JSON."""
+        return touchstone_sources(self.network, self.equivalents, self.forms)
 
 
-def port(network: Network, *ports: str | Port, progress: Progress = no_progress) -> PortEquivalent:
+def port(
+    network: Network,
+    *ports: str | Port,
+    form: str | None = None,
+    reference: Ohms | Sequence[Ohms] = 50,
+    at: Sequence[Given] = (),
+    progress: Progress = no_progress,
+) -> PortEquivalent:
     """The Thevenin and Norton equivalents of one port, or the coupled ones of several.
 
     1 A into each open port, the independent sources off, gives the columns of Z in
     v = Voc - Z·i; 1 V across each port, the others shorted, those of Y in i = Isc - Y·v.
-    Controlled sources stay in place.
+    Controlled sources stay in place. With a `form` the parameters z, y, h, g, abcd or s too,
+    each with its source vector.
 
-    Arguments: ports by their names or as `a,b` (all declared ports if none are given).
-    Errors: UsageError for an unknown port; NoUniqueSolutionError.
-    Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load.
+    Arguments: ports by their names or as `a,b` (all declared ports if none are given);
+    `reference` (ohm) of s, one or one a port; `at` frequencies (hertz, or text such as `1 MHz`)
+    in place of those of the sources.
+    Errors: UsageError for an unknown port or form; NoUniqueSolutionError; DoesNotExistError where
+    the form does not exist.
+    Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load; the currents
+    of the parameters flow into the ports, as textbooks have them.
     Source: L. Thevenin, 1883; E. L. Norton, 1926; test sources: common practice.
     """
     chosen = chosen_ports(network, ports)
-    equivalents: list[Equivalent] = []
-    checks: list[Check] = []
-    for number, frequency in enumerate(network.frequencies):
-        progress("port equivalents", number, len(network.frequencies))
-        found = equivalent(network, chosen, frequency)
-        equivalents.append(found)
-        checks += _checks(network, found)
-    neither = any(not e.thevenin and not e.norton for e in equivalents)
-    cautions = [*about_network(network), *(c for e in equivalents for c in _cautions(e))]
+    checked_form(form, len(chosen))
+    references = references_of(reference, len(chosen))
+    frequencies = frequencies_of(at) or _own_frequencies(network)
+    points: list[_Point] = []
+    for number, frequency in enumerate(frequencies):
+        progress("port equivalents", number, len(frequencies))
+        here = network_at(network, frequency) if at else network
+        points.append(_point(here, chosen, frequency, form, references))
+    general = about_network(network)
+    if at:  # nothing is taken at the file's own frequency
+        general = [c for c in general if c not in interpolated(network)]
+    return _put_together(network, points, general)
+
+
+def _own_frequencies(network: Network) -> tuple[Frequency, ...]:
+    """The frequencies of the sources, and the file's own: a port has an impedance without them."""
+    found = network.frequencies
+    if any(f.same_as(network.frequency) for f in found):
+        return found
+    return tuple(sorted((*found, network.frequency), key=lambda f: f.omega))
+
+
+class _Point(NamedTuple):
+    """What is found at one frequency."""
+
+    equivalent: Equivalent
+    form: PortForm | None
+    checks: list[Check]
+    cautions: list[Caution]
+
+
+def _point(
+    network: Network,
+    ports: tuple[Port, ...],
+    frequency: Frequency,
+    form: str | None,
+    references: tuple[float, ...],
+) -> _Point:
+    found = equivalent(network, ports, frequency)
+    checks = _checks(network, found)
+    near = interpolated(replace(network, frequency=frequency))
+    cautions = [*_cautions(found), *near]
+    if form is None:
+        return _Point(found, None, checks, cautions)
+    parameters = _required(network, found, form, references)
+    proofs = _form_checks(network, found, parameters)
+    cautions += [] if proofs else [_UNPROVED]
+    return _Point(found, parameters, checks + proofs, cautions)
+
+
+def _put_together(
+    network: Network, points: Sequence[_Point], general: Sequence[Caution]
+) -> PortEquivalent:
+    cautions = [*general, *(c for point in points for c in point.cautions)]
+    equivalents = tuple(point.equivalent for point in points)
+    forms = tuple(point.form for point in points if point.form is not None)
+    neither = not forms and any(not e.thevenin and not e.norton for e in equivalents)
     return PortEquivalent(
         network,
-        checks=tuple(checks),
+        checks=tuple(check for point in points for check in point.checks),
         cautions=tuple(dict.fromkeys(cautions)),
         refusal=ExitStatus.DOES_NOT_EXIST if neither else ExitStatus.DONE,
-        equivalents=tuple(equivalents),
+        equivalents=equivalents,
+        forms=forms,
     )
 
 
-def chosen_ports(network: Network, ports: Sequence[str | Port]) -> tuple[Port, ...]:
-    """The ports that were named (names, pairs `a,b`, or ports); all declared ones if none were."""
-    if not ports:
-        if not network.ports:
-            raise UsageError(
-                Diagnostic("no-port", "the file declares no port", hint="name two nodes: a,b")
-            )
-        return tuple(network.ports.values())
-    return tuple(p if isinstance(p, Port) else find_port(network, p) for p in ports)
+def _required(
+    network: Network, e: Equivalent, form: str, references: tuple[float, ...]
+) -> PortForm:
+    """The parameters in a form, or a refusal that offers other forms."""
+    found = in_form(network, e, form, references)
+    if found.parameters is None:
+        others = existing(network, e, references, but=form)
+        where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
+        message = f"{e.named} have no {form} parameters{where}: {found.reason}"
+        if len(e.ports) == 1:
+            message = message.replace(" have ", " has ", 1)
+        hint = f"these forms exist: {', '.join(others)}" if others else "no form exists"
+        raise DoesNotExistError(Diagnostic("no-such-form", message, hint=hint))
+    return found
 
 
-def find_port(network: Network, word: str) -> Port:
-    """A declared port by its name, or the pair of nodes `a,b`.
-
-    Errors: UsageError where there is no such port or node.
-    """
-    if word in network.ports:
-        return network.ports[word]
-    plus, comma, minus = word.partition(",")
-    if not comma:
-        known = ", ".join(network.ports) or "none is declared"
-        raise UsageError(
-            Diagnostic(
-                "unknown-port",
-                f"there is no port called {word}",
-                hint=f"ports: {known}; or name two nodes: a,b",
-            )
-        )
-    network.locate(Quantity("V", (plus, minus)))
-    if plus == minus:
-        raise UsageError(Diagnostic("same-node", f"the port {word} is one node twice"))
-    return Port(word, plus, minus)
-
-
-def equivalent(network: Network, ports: tuple[Port, ...], frequency: Frequency) -> Equivalent:
-    """The equivalents of some ports at one frequency (see `port`); not proved yet."""
-    number = len(ports)
-    sources = [s.name for s in network.sources]
-    u = source_values(network, frequency)
-    open_h, no_thevenin = _responses(network, ports, frequency, "current")
-    short_h, no_norton = _responses(network, ports, frequency, "voltage")
-    z = y = voltages = currents = None
-    if open_h is not None:
-        z, voltages = open_h[:, -number:], open_h[:, :-number] * u
-    if short_h is not None:
-        y, currents = -short_h[:, -number:], short_h[:, :-number] * u
-    here = [k for k, s in enumerate(network.sources) if _at(network.frequency_of(s), frequency)]
-    return Equivalent(
-        ports=ports,
-        frequency=frequency,
-        sources=tuple(sources[k] for k in here),
-        values=tuple((complex(u[k]), network.sources[k].output) for k in here),
-        impedance=z,
-        admittance=y,
-        voltages=None if voltages is None else voltages[:, here],
-        currents=None if currents is None else currents[:, here],
-        no_thevenin=no_thevenin,
-        no_norton=no_norton,
+def _form_checks(network: Network, e: Equivalent, form: PortForm) -> list[Check]:
+    where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
+    off = proved(network, e, form)
+    return (
+        []
+        if off is None
+        else [Check(f"parameters {form.form} under loads{where}", off, CLOSURE_LIMIT)]
     )
-
-
-def _at(one: Frequency, other: Frequency) -> bool:
-    return abs(one.omega - other.omega) <= 1e-12 * max(one.omega, other.omega)
-
-
-def _responses(
-    network: Network, ports: tuple[Port, ...], frequency: Frequency, test: str
-) -> tuple[Numbers | None, str | None]:
-    """A row a port: what a unit of each source, then of each test source, gives there.
-
-    With test currents the ports are open and the response is a voltage; with test voltages they
-    are shorted and it is the current out of `plus`. None, and the reason, where there is none.
-    """
-    tested, what = with_tests(network, ports, frequency, test)
-    words = "open" if test == "current" else "shorted"
-    try:
-        solver = Solver(tested, frequency)
-        quantities = [
-            Quantity("V", (p.plus, p.minus)) if test == "current" else Quantity("I", (name,))
-            for p, name in zip(ports, what, strict=True)
-        ]
-        if not _determined(solver, quantities, len(ports)):
-            return None, f"with the port {words}, {'; '.join(solver.reasons)}"
-        return np.array([solver.coefficients(q) for q in quantities]), None
-    except EquivError as error:
-        return None, f"with the port {words}, {'; '.join(d.message for d in error.diagnostics)}"
-
-
-def with_tests(
-    network: Network, ports: Sequence[Port], frequency: Frequency, test: str
-) -> tuple[Network, list[str]]:
-    """The network with a unit test source at each port, and the test sources' names."""
-    options = Options(at=frequency)
-    names = [TEST.format(p.name) for p in ports]
-    kind = KINDS[test]
-    # a test current flows from minus to plus inside its source: out of it into plus
-    ends = [(p.minus, p.plus) if test == "current" else (p.plus, p.minus) for p in ports]
-    elements = [
-        kind(name, nodes, Decimal(1), options=options)
-        for name, nodes in zip(names, ends, strict=True)
-    ]
-    return network.with_elements(elements), names
-
-
-def _determined(solver: Solver, quantities: Sequence[Quantity], tests: int) -> bool:
-    """Whether the responses are unique, and the sources and each test source have a solution."""
-    if solver.degenerate is None:
-        return True
-    own = solver.u.copy()
-    own[-tests:] = 0
-    tries = [own, *np.eye(len(own))[-tests:]]
-    return all(map(solver.unique, quantities)) and all(map(solver.consistent, tries))
 
 
 def _checks(network: Network, e: Equivalent) -> list[Check]:
@@ -224,15 +221,24 @@ def _checks(network: Network, e: Equivalent) -> list[Check]:
 
 
 def _cautions(e: Equivalent) -> list[Caution]:
-    least = e.least_resistance
-    # without a Thevenin form a conductance of zero is an ideal current source: nothing to warn of
-    if least is None or least > 0 or (least == 0 and not e.thevenin):
+    """Ports whose resistance is not positive, each by its own name."""
+    if not e.thevenin and not e.norton:
         return []
     what = "resistance" if e.thevenin else "conductance"
-    return [
-        Caution(
-            "resistance-not-positive",
-            f"the {what} of {e.named} is {'zero' if least == 0 else 'negative'}: this is legal, "
-            "but the operating point with a load may not be stable",
-        )
-    ]
+    found = []
+    for port, value in zip(e.ports, e.own_resistances, strict=True):
+        # without a Thevenin form a conductance of zero is an ideal current source
+        if value > 0 or (value == 0 and not e.thevenin):
+            continue
+        sign = "zero" if value == 0 else "negative"
+        found.append(_not_positive(f"the {what} of {port.name} is {sign}"))
+    if not found and (e.least_resistance or 0) < 0:
+        found.append(_not_positive(f"together {e.named} can give more than they take"))
+    return found
+
+
+def _not_positive(words: str) -> Caution:
+    return Caution(
+        "resistance-not-positive",
+        f"{words}: this is legal, but the operating point with a load may not be stable",
+    )

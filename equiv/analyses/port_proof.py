@@ -17,9 +17,12 @@ from equiv.equations.solution import Solver
 from equiv.network import Network, Port
 from equiv.units import Rectangular, as_number
 
-_DC_LOADS = (0.5, 2.0, 7.0)
-_AC_LOADS = (0.5 + 0.0j, 1.5 - 1.0j, 2.0 + 3.0j)
+DC_LOADS = (0.5, 2.0, 7.0, 0.3, 11.0, 3.0)
+AC_LOADS = (0.5 + 0.0j, 1.5 - 1.0j, 2.0 + 3.0j, 0.3 + 0.4j, 5.0 - 2.0j, 1.1 + 0.7j)
+"""Loads of the proof, relative to the port's own impedance: the first three that have a solution."""
 _ZERO = 1e-12
+_NOISE = 1e-9
+_LOADS = 3
 
 WithTests = Callable[[Network, Sequence[Port], Frequency, str], tuple[Network, list[str]]]
 
@@ -37,18 +40,25 @@ class LoadTest:
 class Equivalent:
     """v = Voc - Z·i and i = Isc - Y·v of some ports at one frequency.
 
-    `voltages` and `currents` have a row a port and a column a source (V, A); `impedance` (ohm)
-    and `admittance` (S) are square; each is None where it does not exist, with the reason.
+    `voltages` and `currents` have a row a port and a column a source or group (V, A); a column is
+    no term of its own where `alone` says that it has no solution without the others.
+    `open_voltage` and `short_current` are those of all sources, `impedance` (ohm) and `admittance`
+    (S) square. Each is None where it does not exist, with the reason.
     """
 
     ports: tuple[Port, ...]
     frequency: Frequency
     sources: tuple[str, ...]
-    values: tuple[tuple[complex, str], ...]
+    values: tuple[tuple[complex, str] | None, ...]
     impedance: Numbers | None
     admittance: Numbers | None
     voltages: Numbers | None
     currents: Numbers | None
+    open_voltage: Numbers | None
+    short_current: Numbers | None
+    members: tuple[tuple[int, ...], ...]
+    """The numbers, among the network's sources, of each source or group."""
+    alone: tuple[bool, ...]
     no_thevenin: str | None
     no_norton: str | None
     loads: list[LoadTest] = field(default_factory=list, compare=False)
@@ -70,16 +80,6 @@ class Equivalent:
         return " and ".join(p.name for p in self.ports)
 
     @property
-    def open_voltage(self) -> Numbers | None:
-        """The open-circuit voltage of each port (V): the sum of its terms."""
-        return None if self.voltages is None else self.voltages.sum(axis=1)
-
-    @property
-    def short_current(self) -> Numbers | None:
-        """The short-circuit current of each port (A): the sum of its terms."""
-        return None if self.currents is None else self.currents.sum(axis=1)
-
-    @property
     def disagreement(self) -> float:
         """|Voc - Z·Isc| against |Voc| and |Z|·|Isc|: they come from two different networks."""
         z, voc, isc = self.impedance, self.open_voltage, self.short_current
@@ -92,13 +92,22 @@ class Equivalent:
         return max(off, product / max(1.0, float((np.abs(z) @ np.abs(self.admittance)).max())))
 
     @property
+    def own_resistances(self) -> list[float]:
+        """Re Z of each port, the others open (Re Y where Z does not exist); rounding is zero."""
+        matrix = self.impedance if self.impedance is not None else self.admittance
+        if matrix is None:
+            return []
+        own = np.diag(matrix)
+        return [0.0 if abs(x.real) <= _ZERO * abs(x) else float(x.real) for x in own]
+
+    @property
     def least_resistance(self) -> float | None:
         """The smallest eigenvalue of the Hermitian part of Z (of Y where Z does not exist)."""
         matrix = self.impedance if self.impedance is not None else self.admittance
         if matrix is None:
             return None
         least = float(np.linalg.eigvalsh((matrix + matrix.conj().T) / 2).min())
-        return 0.0 if abs(least) <= _ZERO * np.abs(matrix).max() else least
+        return 0.0 if abs(least) <= _NOISE * np.abs(matrix).max() else least
 
     def loaded(self, load: complex, extra: complex) -> Numbers:
         """The voltages with a load at each port, and an extra current into each `plus` (V)."""
@@ -120,12 +129,14 @@ def three_loads(network: Network, e: Equivalent) -> float | None:
 
     Where the equivalent has no source of its own, 1 A is fed into each port beside the load.
     """
-    factors = _AC_LOADS if e.frequency.omega else _DC_LOADS
+    factors = AC_LOADS if e.frequency.omega else DC_LOADS
     feeds = e.open_voltage if e.thevenin else e.short_current
     extra = 0.0 if feeds is not None and np.abs(feeds).max(initial=0.0) > 0 else 1.0
-    base = _base(e)
+    base = base_resistance(e)
     off, size = 0.0, 0.0
     for factor in factors:
+        if len(e.loads) == _LOADS:
+            break
         load = complex(base * factor)
         solver = Solver(_loaded(network, e, load, extra), e.frequency, "branch-current")
         asked = [Quantity("V", (p.plus, p.minus)) for p in e.ports]
@@ -140,7 +151,7 @@ def three_loads(network: Network, e: Equivalent) -> float | None:
     return (off / size if size else off) if e.loads else None
 
 
-def _base(e: Equivalent) -> float:
+def base_resistance(e: Equivalent) -> float:
     """A resistance (ohm) that suits the port."""
     if e.impedance is not None and np.abs(e.impedance).max() > 0:
         return float(np.abs(np.diag(e.impedance)).max() or 1.0)

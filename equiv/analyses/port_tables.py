@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
-from equiv.analyses.headings import frequency_words
+from equiv.analyses.headings import at_words, frequency_words
 from equiv.analyses.port_proof import Equivalent
 from equiv.analyses.result import pair
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
@@ -31,6 +31,10 @@ def _entry(e: Equivalent, matrix: Numbers | None, *index: int) -> Cell:
     return None if matrix is None else _number(e, matrix[index])
 
 
+def _term(e: Equivalent, matrix: Numbers | None, port: int, source: int) -> Cell:
+    return _entry(e, matrix, port, source) if e.alone[source] else None
+
+
 def _term_table(network: Network, e: Equivalent, index: int) -> Table:
     port = e.ports[index]
     columns = (
@@ -38,27 +42,54 @@ def _term_table(network: Network, e: Equivalent, index: int) -> Table:
         Column("source", key=True),
         Column("value"),
         Column("open-circuit voltage", "V", family="voltage"),
-        Column("short-circuit current", "A", family="current"),
+        Column(_short(e), "A", family="current"),
     )
     rows = [
         Row(
             (
-                k + 1, name, Measure(_number(e, value), "V" if output == "V" else "A"),
-                _entry(e, e.voltages, index, k), _entry(e, e.currents, index, k),
+                k + 1, name, value_cell(e, value),
+                _term(e, e.voltages, index, k), _term(e, e.currents, index, k),
             )
         )
-        for k, (name, (value, output)) in enumerate(zip(e.sources, e.values, strict=True))
+        for k, (name, value) in enumerate(zip(e.sources, e.values, strict=True))
     ]  # fmt: skip
+    notes = [
+        f"{name}: with it alone there is no solution, so it has no term."
+        for k, name in enumerate(e.sources)
+        if not e.alone[k]
+    ]
+    if len(e.ports) > 1:
+        notes.append(
+            "The voltage is with all these ports open, the current with all of them shorted at "
+            "once: for the current of one fault, ask for its port alone."
+        )
     total = (_entry(e, e.open_voltage, index), _entry(e, e.short_current, index))
-    rows.append(Row(("", "sum", "", *total), total=True))
+    rows.append(Row(("", "all sources", "", *total), total=True))
     subtitles = (
         f"Port {port.name}: voltage of {port.plus} over {port.minus}, "
         f"current out of {port.plus} into the load",
         frequency_words(e.frequency),
     )
     return Table(
-        network.title or "Port equivalent", subtitles, columns, tuple(rows), name=port.name
+        network.title or "Port equivalent",
+        subtitles,
+        columns,
+        tuple(rows),
+        tuple(notes),
+        name=f"{port.name}{at_words(e.frequency)}",
     )
+
+
+def _short(e: Equivalent) -> str:
+    """What the short-circuit current is, where there are several ports."""
+    return "short-circuit current" + (", all shorted" if len(e.ports) > 1 else "")
+
+
+def value_cell(e: Equivalent, value: tuple[complex, str] | None) -> Cell:
+    """A source's value; nothing for a group."""
+    if value is None:
+        return ""
+    return Measure(_number(e, value[0]), "V" if value[1] == "V" else "A")
 
 
 def _equivalents_table(e: Equivalent) -> Table:
@@ -81,7 +112,7 @@ def _equivalents_table(e: Equivalent) -> Table:
     rows: list[Row] = []
     for name, column, first, unit, matrix, second, over in (
         ("Thevenin", e.open_voltage, "open-circuit voltage", "V", e.impedance, "impedance", "ohm"),
-        ("Norton", e.short_current, "short-circuit current", "A", e.admittance, "admittance", "S"),
+        ("Norton", e.short_current, _short(e), "A", e.admittance, "admittance", "S"),
     ):
         for p, port in enumerate(e.ports):
             at = f" of {port.name}" if several else ""
@@ -98,8 +129,16 @@ def _equivalents_table(e: Equivalent) -> Table:
         notes.append(f"There is no Norton equivalent: {e.no_norton}.")
     if e.thevenin and e.norton:
         notes.append("Both equivalents exist.")
+    if not e.thevenin and not e.norton:
+        if len(e.ports) > 1:
+            notes.append(
+                "Each port alone may have an equivalent: ask for them one at a time, or for a "
+                "mixed form (--form h)."
+            )
+        rows = []
+    columns = columns if rows else ()
     return Table("Equivalents", (frequency_words(e.frequency),), columns, tuple(rows),
-                 tuple(notes), name="equivalents")  # fmt: skip
+                 tuple(notes), name=f"equivalents{at_words(e.frequency)}")  # fmt: skip
 
 
 def tests_of(e: Equivalent) -> list[tuple[int, str, list[complex]]]:
@@ -128,7 +167,14 @@ def _tests_table(e: Equivalent) -> Table:
         "Independent sources off, controlled sources in place. A response in A is the current "
         "into the port; the other ports are open for 1 A and shorted for 1 V.",
     )
-    return Table("Test sources", (), columns, tuple(rows), notes, name="tests")
+    return Table(
+        "Test sources",
+        (frequency_words(e.frequency),),
+        columns,
+        tuple(rows),
+        notes,
+        name=f"tests{at_words(e.frequency)}",
+    )
 
 
 def _proof_table(e: Equivalent) -> Table:
@@ -152,7 +198,14 @@ def _proof_table(e: Equivalent) -> Table:
     feeds = e.open_voltage if e.thevenin else e.short_current
     fed = "" if feeds is not None and abs(feeds).max() > 0 else ", with 1 A fed in beside it"
     notes = (f"Each load is put across every port of the original network{fed}.",)
-    return Table("Proof by three loads", (), columns, tuple(rows), notes, name="loads")
+    return Table(
+        "Proof by three loads",
+        (frequency_words(e.frequency),),
+        columns,
+        tuple(rows),
+        notes,
+        name=f"loads{at_words(e.frequency)}",
+    )
 
 
 def port_data(e: Equivalent) -> dict[str, Any]:
@@ -177,8 +230,14 @@ def port_data(e: Equivalent) -> dict[str, Any]:
         ],
         "terms": [
             {"source": name,
-             "voltage": None if e.voltages is None else [pair(complex(v)) for v in e.voltages[:, k]],
-             "current": None if e.currents is None else [pair(complex(i)) for i in e.currents[:, k]]}
+             "voltage": _column(e, e.voltages, k), "current": _column(e, e.currents, k)}
             for k, name in enumerate(e.sources)
         ],
     }  # fmt: skip
+
+
+def _column(e: Equivalent, terms: Numbers | None, source: int) -> list[Any] | None:
+    """The JSON of a source's terms at every port; None where they do not exist."""
+    if terms is None or not e.alone[source]:
+        return None
+    return [pair(complex(x)) for x in terms[:, source]]

@@ -60,10 +60,43 @@ class Table:
     rows: tuple[Row, ...] = ()
     notes: tuple[str, ...] = ()
     text: str | None = None
+    plain: str | None = None
+    """The same text in ASCII, for places that have no other signs."""
     name: str = "table"
     """A word for the table, used in CSV where a result has several."""
+
+    def text_in(self, unicode: bool) -> str | None:
+        """The text, in ASCII where that is wanted and there."""
+        return self.text if unicode or self.plain is None else self.plain
 
     @staticmethod
     def rows_of(rows: Sequence[Sequence[Cell]]) -> tuple[Row, ...]:
         """Plain rows from plain sequences."""
         return tuple(Row(tuple(cells)) for cells in rows)
+
+
+MEASURES = {"V": "voltage", "A": "current", "ohm": "impedance", "W": "power"}
+"""What the numbers of an axis are, by their unit."""
+
+
+class Series(NamedTuple):
+    """A named row of numbers, one a point; what does not exist is not a number."""
+
+    name: str
+    values: tuple[float, ...]
+
+
+@dataclass(frozen=True)
+class Plot:
+    """A picture as data: magnitudes stacked as bands, and lines over them, against `x`."""
+
+    title: str
+    x_name: str
+    x_unit: str
+    x: tuple[float, ...]
+    x_log: bool
+    y_name: str
+    y_unit: str
+    bands: tuple[Series, ...] = ()
+    lines: tuple[Series, ...] = ()
+    y_log: bool = False

@@ -9,6 +9,7 @@ from pathlib import Path
 
 import typer
 
+from equiv.cli import load_command, loadtest_command, match_command  # noqa: F401
 from equiv.cli.commands import app
 from equiv.cli.environment import Environment, silence
 from equiv.cli.options import Request
@@ -73,7 +74,7 @@ def _perform(request: Request, environment: Environment) -> int:
     if path is not None:
         require_writable(path, settings.force)
     with ProgressBar(environment, settings.quiet) as progress:
-        run = Run(environment, settings.parameters, settings.frequency, progress)
+        run = Run(environment, settings.parameters, settings.frequency, progress, settings.force)
         result = request.work(run)
     text = text_of(result, form, settings, environment)
     if path is None:

@@ -7,7 +7,8 @@ from typing import TYPE_CHECKING, Annotated, Literal
 import typer
 
 import equiv
-from equiv.cli import completion
+from equiv.cli import completion, port_files
+from equiv.cli import port_options as options
 from equiv.cli.options import shared
 from equiv.cli.run import Run
 
@@ -31,6 +32,16 @@ Quantities = Annotated[
         show_default=False,
         help="I:R3, V:a, V:a,b, V:R3, P:R3; the file's find statements if none is given.",
         autocompletion=completion.quantities,
+    ),
+]
+
+Ports = Annotated[
+    list[str] | None,
+    typer.Argument(
+        metavar="PORT ...",
+        show_default=False,
+        help="A declared port or a pair of nodes a,b; all declared ports if none is given.",
+        autocompletion=completion.ports,
     ),
 ]
 
@@ -160,24 +171,41 @@ def isolate(
 def port(
     run: Run,
     file: File,
-    ports: Annotated[
-        list[str] | None,
-        typer.Argument(
-            metavar="PORT ...",
-            show_default=False,
-            help="A declared port or a pair of nodes a,b; all declared ports if none is given.",
-            autocompletion=completion.ports,
-        ),
-    ] = None,
+    ports: Ports = None,
+    form: options.Form = None,
+    reference: options.References = None,
+    at: options.At = None,
+    from_: options.From = None,
+    to: options.To = None,
+    points: options.Points = 11,
+    log: options.Log = False,
+    touchstone: options.TouchstoneFile = None,
 ) -> Result:
-    """Thevenin and Norton equivalents of one port or several.
+    """Equivalents or parameters of one port or several.
+
+    The Thevenin and Norton equivalents; with --form z, y, h, g, abcd or s and its sources.
+
+    --touchstone writes s, or z or y by --form, as a Touchstone file of version 1.1; the source
+    vector goes to a file of the same name with .sources.json behind it.
 
     \b
     Examples:
       equiv port supply.equiv PANEL
       equiv port supply.equiv bus,gnd pump,gnd --json
+      equiv port filter.equiv IN OUT --form s --reference 50ohm --at 1MHz
+      equiv port filter.equiv IN OUT --from 1MHz --to 9MHz --touchstone filter.s2p
     """
-    return equiv.port(run.network(file), *(ports or ()), progress=run.progress)
+    files = port_files.of(run, touchstone)
+    result = equiv.port(
+        run.network(file),
+        *(ports or ()),
+        form=form or ("s" if touchstone else None),
+        reference=reference or 50,
+        at=port_files.frequencies(at or (), from_, to, points, log),
+        progress=run.progress,
+    )
+    files.write(result)
+    return result
 
 
 @app.command()

@@ -46,13 +46,17 @@ def _offered(names: Callable[[typer.Context, str], Iterable[str]]) -> Completion
 
 def _before_colon(ctx: typer.Context) -> str:
     """`I:` where the shell has split `I:R3` at its colon, as bash does."""
-    words: list[str] = ctx.params.get("quantities") or []
+    words: list[str] = ctx.params.get("quantities") or ctx.params.get("what") or []
     return f"{words[-2]}:" if len(words) > 1 and words[-1] == ":" else ""
 
 
 @_offered
 def quantities(ctx: typer.Context, incomplete: str) -> Iterator[str]:
     """Voltages of nodes, node pairs and elements; currents and powers of elements."""
+    yield from _quantities(ctx, incomplete)
+
+
+def _quantities(ctx: typer.Context, incomplete: str) -> Iterator[str]:
     network = _network(ctx)
     if "," in incomplete:
         first = incomplete.rpartition(",")[0]
@@ -61,6 +65,20 @@ def quantities(ctx: typer.Context, incomplete: str) -> Iterator[str]:
     yield from (f"V:{node}" for node in network.nodes)
     for what in "VIP":
         yield from (f"{what}:{e.name}" for e in network.elements.values() if e.pairs)
+
+
+@_offered
+def swept(ctx: typer.Context, incomplete: str) -> Iterator[str]:
+    """Ports and pairs of nodes, and quantities."""
+    yield from _network(ctx).ports
+    yield from _quantities(ctx, incomplete)
+
+
+@_offered
+def parameters(ctx: typer.Context, incomplete: str) -> Iterator[str]:
+    """The frequency, and the file's parameters."""
+    yield "frequency"
+    yield from _network(ctx).given
 
 
 @_offered

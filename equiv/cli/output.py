@@ -69,15 +69,16 @@ def require_writable(path: Path, force: bool) -> None:
         raise _refusal(path, "cannot be written: its folder does not exist")
 
 
-def write_whole(text: str, path: Path, force: bool) -> None:
+def write_whole(text: str | bytes, path: Path, force: bool) -> None:
     """A file written whole or not at all: beside its place first, then moved into it."""
     require_writable(path, force)
     # A link is written through, not replaced.
     target = path.resolve()
     beside = target.with_name(f".{target.name[:200]}.{os.getpid()}.part")
     try:
-        with beside.open("x", encoding="utf-8", newline="\n", errors="backslashreplace") as stream:
-            stream.write(text)
+        data = text if isinstance(text, bytes) else text.encode("utf-8", "backslashreplace")
+        with beside.open("xb") as stream:
+            stream.write(data)
             stream.flush()
             os.fsync(stream.fileno())
         _move(beside, target, force)

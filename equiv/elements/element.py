@@ -11,6 +11,7 @@ from typing import Any, ClassVar, NamedTuple
 
 from equiv.elements.laws import Column, Pen
 from equiv.elements.quantity import Quantity
+from equiv.elements.tabulated import Tabulated
 from equiv.units import Number, Value
 
 GROUND = -1
@@ -25,7 +26,7 @@ class Field(NamedTuple):
     keyword: str | None = None
     complex: bool = False
     form: str = "number"
-    """`number` or `ratio`"""
+    """`number`, `ratio`, or `file` for parameters that a Touchstone file gives"""
     aliases: tuple[str, ...] = ()
 
 
@@ -53,12 +54,25 @@ class Frequency(NamedTuple):
 class Parameters(NamedTuple):
     """The named values of a kind that has several, or a choice of one among several."""
 
-    items: tuple[tuple[str, tuple[Value, ...]], ...]
+    items: tuple[tuple[str, tuple[Any, ...]], ...]
+    """A `Value` for each unit of the field; for a field of the form `file` one `Tabulated`."""
 
     @property
     def names(self) -> tuple[str, ...]:
         """Which parameters are given."""
         return tuple(name for name, _ in self.items)
+
+    @property
+    def variant(self) -> tuple[str, ...]:
+        """What decides the form of the law: the names, and what a file's parameters are."""
+        table = self.table
+        return (*self.names, *table.variant) if table is not None else self.names
+
+    @property
+    def table(self) -> Tabulated | None:
+        """The parameters from a file, where there is one."""
+        found = (values[0] for _, values in self.items)
+        return next((value for value in found if isinstance(value, Tabulated)), None)
 
     def __getitem__(self, name: Any) -> Any:
         if isinstance(name, str):
@@ -108,7 +122,7 @@ class Element(Record):
     role: ClassVar[str] = "passive"
     """`passive`, `source`, `controlled` or `device`"""
     connection: ClassVar[str] = "a b"
-    """The words of the connection, with the marks that they must bear."""
+    """The words of the connection, with the marks that they must bear; `…` repeats the pair."""
     pairs: ClassVar[tuple[tuple[int, int], ...]] = ((0, 1),)
     """The terminal pairs, each a branch, as positions in `nodes`."""
     fields: ClassVar[tuple[Field, ...]] = ()
@@ -136,7 +150,12 @@ class Element(Record):
     @property
     def variant(self) -> tuple[str, ...]:
         """Elements of a kind with the same variant share one form of the law."""
-        return self.value.names if isinstance(self.value, Parameters) else ()
+        return self.value.variant if isinstance(self.value, Parameters) else ()
+
+    @property
+    def table(self) -> Tabulated | None:
+        """The parameters that a file gives at some frequencies, where the element has them."""
+        return self.value.table if isinstance(self.value, Parameters) else None
 
     def pair_nodes(self, number: int, ground: str) -> tuple[str, str]:
         """The names of the nodes of a terminal pair."""

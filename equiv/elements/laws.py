@@ -86,6 +86,13 @@ class Column(Protocol):
     def parameter(self, name: str, index: int = 0) -> Any:
         """A named value of a kind that has several."""
 
+    @property
+    def reference(self) -> Any:
+        """The reference resistance of parameters s that files give (ohm)."""
+
+    def entry(self, row: int, column: int) -> Any:
+        """A parameter that files give at some frequencies, at this one."""
+
     def linked(self, number: int) -> tuple[Any, Any]:
         """Branches and values of the elements that a coupling joins: 0 first, 1 second."""
 

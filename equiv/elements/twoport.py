@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from equiv.elements import tabulated
 from equiv.elements.element import Element, Field
 from equiv.elements.laws import Across, Column, Pen, Through
 
@@ -9,11 +10,12 @@ from equiv.elements.laws import Across, Column, Pen, Through
 class TwoPort(Element):
     """A two-port by its parameters.
 
-    Written:  twoport NAME +a -b +c -d z|y|h|abcd VALUE VALUE VALUE VALUE
+    Written:  twoport NAME +a -b +c -d z|y|h|abcd VALUE VALUE VALUE VALUE, or … file "x.s2p"
     Equation: z: v = z·i; y: i = y·v; h: (v1, i2) = h·(i1, v2); abcd: (v1, i1) = abcd·(v2, -i2)
     Off:      it stays as it is.
     Notes:    Row by row, each in its SI unit; both currents are counted into the first nodes.
-              Complex parameters hold at the file's frequency only.
+              Complex parameters hold at the file's frequency only; those of a Touchstone file
+              (z, y, h, g or s) at its points, and between them as `nport` says.
     Example:  twoport B1 +a -b +c -d z 10 2 2 8
     Source:   IEC 60050-131 (two-port parameters), common practice.
     """
@@ -30,10 +32,14 @@ class TwoPort(Element):
         Field("y", ("S",) * 4, keyword="y", complex=True),
         Field("h", ("ohm", "", "", "S"), keyword="h", complex=True),
         Field("abcd", ("", "ohm", "S", ""), keyword="abcd", complex=True),
+        Field("file", ("",), keyword="file", form="file"),
     )
 
     @classmethod
     def law(cls, some: Column, pen: Pen) -> None:
+        if some.variant[0] == "file":
+            tabulated.law(some, pen)
+            return
         (form,) = some.variant
         a, b, c, d = (some.parameter(form, index) for index in range(4))
         v1, v2 = some.pair(0), some.pair(1)
@@ -53,6 +59,9 @@ class TwoPort(Element):
 
     @classmethod
     def nodal(cls, some: Column, pen: Pen) -> None:
+        if some.variant[0] == "file":
+            tabulated.nodal(some, pen)
+            return
         if some.variant != ("y",):
             cls.law(some, pen)
             return

@@ -18,6 +18,13 @@ def matrix(system: System) -> Numbers:
     return a
 
 
+def gross_matrix(system: System) -> Numbers:
+    """Σ|entry| for each place of A: an entry that is small by cancelling has lost its digits."""
+    a = np.zeros((system.size, system.size))
+    np.add.at(a, (system.a.rows, system.a.columns), np.abs(system.a.values))
+    return a
+
+
 def balance(a: Numbers) -> tuple[Numbers, Numbers]:
     """Powers of two for rows and columns that bring the largest entry of each near one."""
     size = np.abs(a)
@@ -44,14 +51,15 @@ class DenseFactor:
         self.a = matrix(system)
         self.rows, self.columns = balance(self.a)
         self.scaled = self.a * self.rows[:, None] * self.columns
-        condition = self._condition(componentwise=not strict)
+        gross = gross_matrix(system) * self.rows[:, None] * self.columns
+        condition = self._condition(gross, componentwise=not strict)
         if not condition <= WORST_CONDITION:
             raise IllConditionedError
 
-    def _condition(self, componentwise: bool) -> float:
+    def _condition(self, gross: Numbers, componentwise: bool) -> float:
         """1-norm condition of the balanced matrix, or the radius of |A⁻¹||A|.
 
-        The latter does not change with any scaling of rows and columns: it tells a stiff network
+        |A| is taken before entries cancel, as far as rounding goes. The latter does not change with any scaling of rows and columns: it tells a stiff network
         from a singular one (F. L. Bauer, 1966; R. D. Skeel, 1979).
         """
         if not self.a.size:
@@ -63,8 +71,8 @@ class DenseFactor:
         if not np.isfinite(inverse).all():
             return float("inf")
         if not componentwise:
-            return float(np.linalg.norm(self.scaled, 1) * np.linalg.norm(inverse, 1))
-        product = np.abs(inverse) @ np.abs(self.scaled)
+            return float(np.linalg.norm(gross, 1) * np.linalg.norm(inverse, 1))
+        product = np.abs(inverse) @ gross
         vector = np.ones(len(product))
         radius = 1.0
         for _ in range(30):

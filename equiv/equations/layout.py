@@ -39,20 +39,18 @@ class Layout:
         for number, element in enumerate(self.elements):
             members.setdefault((type(element), element.variant), []).append(number)
         counts = np.empty(len(self.elements), dtype=np.int64)
-        for (kind, _), numbers in members.items():
-            counts[numbers] = len(kind.pairs)
+        for numbers in members.values():
+            counts[numbers] = len(self.elements[numbers[0]].pairs)
         self.first_branch: Integers = np.concatenate(([0], np.cumsum(counts)))
         self.branch_count = int(self.first_branch[-1])
         self.tail = np.full(self.branch_count, GROUND)
         self.head = np.full(self.branch_count, GROUND)
-        self.columns = [self._column(*key, numbers) for key, numbers in members.items()]
+        self.columns = [self._column(variant, group) for (_, variant), group in members.items()]
 
-    def _column(
-        self, kind: type[Element], variant: tuple[str, ...], numbers: list[int]
-    ) -> ElementColumn:
+    def _column(self, variant: tuple[str, ...], numbers: list[int]) -> ElementColumn:
         elements = [self.elements[i] for i in numbers]
         first = self.first_branch[numbers]
-        for index, ends in enumerate(kind.pairs):
+        for index, ends in enumerate(elements[0].pairs):
             for end, where in zip(ends, (self.tail, self.head), strict=True):
                 if end != GROUND:
                     where[first + index] = self._node_numbers([e.nodes[end] for e in elements])
@@ -126,6 +124,8 @@ class ElementColumn:
     ) -> None:
         self.layout, self.elements, self.variant, self.first = layout, elements, variant, first
         self.kind = type(elements[0]) if elements else Element
+        self._tabulated: tuple[float, list[tuple[complex, ...]]] | None = None
+        """What files give, at the frequency (Hz) that was asked for last."""
 
     def branch(self, number: int = 0) -> Integers:
         """The elements' branches."""
@@ -167,6 +167,23 @@ class ElementColumn:
         """The branch whose current each element senses."""
         branches = [self.layout.branch_of_quantity(e.senses) for e in self.elements if e.senses]
         return np.array(branches, dtype=np.int64)
+
+    @property
+    def reference(self) -> Numbers:
+        """The reference resistance of parameters s that files give (ohm)."""
+        return np.array([e.table.reference for e in self.elements if e.table])
+
+    def entry(self, row: int, column: int) -> Numbers:
+        """A parameter that files give at some frequencies, at this one."""
+        s = complex(self.s)
+        assert not s.real, "files give parameters on the imaginary axis only"
+        hertz = s.imag / (2 * np.pi)
+        if self._tabulated is None or self._tabulated[0] != hertz:
+            tables = {id(e.table): e.table for e in self.elements if e.table}
+            known = {key: table.at(hertz) for key, table in tables.items()}
+            self._tabulated = hertz, [known[id(e.table)] for e in self.elements]
+        ports = int(self.variant[-1])
+        return np.array([matrix[row * ports + column] for matrix in self._tabulated[1]])
 
     def linked(self, number: int) -> tuple[Integers, Numbers]:
         """Branches and values of the elements that a coupling joins."""

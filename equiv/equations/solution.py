@@ -59,6 +59,11 @@ class State:
         row = self.system.row(quantity)
         return complex(row.state @ self.x + row.source @ self.u)
 
+    def largest(self, what: str) -> float:
+        """The largest voltage (V) or current (A) of any branch."""
+        values = self.voltages if what == "V" else self.currents
+        return float(np.abs(values).max(initial=0.0))
+
     def balance(self) -> float:
         """|Σ v·i*| / Σ|v·i*| over all branches (B. D. H. Tellegen, 1952); 0 where nothing flows."""
         powers = self.voltages * np.conj(self.currents)
@@ -173,6 +178,12 @@ class Solver:
         if self.degenerate is None or self.degenerate.consistent(u):
             return True
         return not self.degenerate.reaches(self.row(quantity), u)
+
+    def require_unique(self, quantity: Quantity) -> None:
+        """Raise NoUniqueSolutionError where a quantity is not determined."""
+        if not self.unique(quantity):
+            message = f"{quantity} has no unique value: {'; '.join(self.reasons)}"
+            raise NoUniqueSolutionError(Diagnostic("no-unique-solution", message))
 
     def coefficients(self, quantity: Quantity) -> Numbers:
         """What one unit of each source gives to a voltage or current (one transposed solve).

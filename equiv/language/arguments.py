@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Mapping
 from decimal import localcontext
 
+from equiv.elements.element import Frequency
 from equiv.errors import UsageError
 from equiv.language.amounts import Written, read_amount
 from equiv.language.assembly import Override
-from equiv.language.fields import LaterValue, read_frequency, read_number
+from equiv.language.fields import LaterFrequency, LaterValue, read_frequency, read_number
 from equiv.language.mistakes import Mistake
 from equiv.language.numerals import EXACT
 from equiv.language.reports import Argument, Reports
@@ -26,6 +27,21 @@ def value(text: str, unit: str, may_be_complex: bool = True) -> Value:
             found = read_number(words, unit, may_be_complex, f"a value in {unit or 'no unit'}")
             words.end()
             return found.evaluate(Scope()) if isinstance(found, LaterValue) else found
+    except Mistake as mistake:
+        reports = Reports()
+        reports.add(mistake, argument)
+        raise UsageError(reports.diagnostics()) from None
+
+
+def frequency(text: str) -> Frequency:
+    """The frequency that a text such as `1.5 MHz` or `300 rad/s` stands for; `UsageError` if none."""
+    argument = Argument("frequency", 1, text)
+    try:
+        with localcontext(EXACT):
+            words = Words(argument)
+            found = read_frequency(words)
+            words.end()
+            return found.evaluate(Scope()) if isinstance(found, LaterFrequency) else found
     except Mistake as mistake:
         reports = Reports()
         reports.add(mistake, argument)

@@ -6,6 +6,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import replace
 from decimal import Decimal
 from fractions import Fraction
+from pathlib import Path
 from typing import Any
 
 from equiv.elements import KINDS, Element
@@ -89,9 +90,13 @@ class Builder:
         """A named terminal pair."""
         return self._add(f"port {_name(name)} +{_name(plus)} -{_name(minus)}")
 
-    def network(self) -> Network:
-        """The network; `NetworkFileError` with every mistake, as for a file."""
-        return replace(parse("\n".join(self._lines), name="builder"), origin=NOWHERE, places=())
+    def network(self, folder: Path | None = None) -> Network:
+        """The network; `NetworkFileError` with every mistake, as for a file.
+
+        `folder` is where files that elements take their parameters from are looked for.
+        """
+        made = parse("\n".join(self._lines), name="builder", folder=folder)
+        return replace(made, origin=NOWHERE, places=())
 
     def _add(self, line: str) -> Builder:
         self._lines.append(line)
@@ -102,14 +107,17 @@ def _element(
     kind: type[Element], name: str, words: Sequence[Given], options: dict[str, Any]
 ) -> str:
     """The statement of an element."""
-    count = len(shape(kind.kind).marks)
+    form = shape(kind.kind)
+    count = len(form.marks)
+    if form.repeats:  # everything but nodes has a keyword
+        count = max(count, len(words) - len(words) % count)
     ends, values = words[:count], words[count:]
     if len(ends) < count:
         raise _unusable(f"{kind.kind} {name} needs {count} names of what it joins", kind)
     parts = [kind.kind, _name(name), *write_connection(kind, tuple(map(_name, ends)))]
     fields = list(kind.fields)
     if kind.rule == "all" and values:
-        for field in fields:
+        for field in (f for f in fields if f.form != "file"):
             taken, values = values[: len(field.units)], values[len(field.units) :]
             if field.form == "ratio":
                 taken, values = (taken[:1], (*taken[1:], *values))
@@ -119,7 +127,8 @@ def _element(
     for field in fields:
         for word in (field.keyword or field.name, *field.aliases):
             if word in options:
-                parts.extend([field.keyword or "", *map(_value, _sequence(options.pop(word)))])
+                given, write = options.pop(word), _text if field.form == "file" else _value
+                parts.extend([field.keyword or "", *map(write, _sequence(given))])
     parts.extend(_option(word, options[word], kind) for word in options)
     return " ".join(part for part in parts if part)
 

@@ -15,6 +15,8 @@ class Shape(NamedTuple):
     """The marks that the words of a kind's connection bear: `+`, `-`, `>` before it, or none."""
 
     marks: tuple[str, ...]
+    repeats: bool = False
+    """Whether the marks may come again, as often as there are words for them."""
 
     @property
     def arrow_allowed(self) -> bool:
@@ -31,6 +33,8 @@ def shape(kind: str) -> Shape:
         if word == ">":
             arrow = True
             continue
+        if word == "…":
+            return Shape(tuple(marks), True)
         marks.append(">" if arrow else word[0] if word[0] in "+-" else "")
         arrow = False
     return Shape(tuple(marks))
@@ -41,7 +45,8 @@ def read_connection(words: Words, kind: type[Element], name: str) -> tuple[str, 
     form = shape(kind.kind)
     wanted = "a node" if kind.pairs else "the name of an element"
     found: list[str] = []
-    for number, mark in enumerate(form.marks):
+    marks = list(form.marks)
+    for number, mark in enumerate(marks):  # grows while the marks come again
         if words.peek() == ">" and number:
             arrow = words.take("an arrow")
             if mark != ">" and not form.arrow_allowed:
@@ -59,6 +64,8 @@ def read_connection(words: Words, kind: type[Element], name: str) -> tuple[str, 
         elif text[0] in "+-" and is_name(text[1:]):
             raise _wrong(word.place, text, kind, name)
         found.append(require_name(text, at, wanted))
+        if form.repeats and len(found) == len(marks) and words.peek()[:1] in ("+", "-"):
+            marks += form.marks
     return tuple(found)
 
 
@@ -77,7 +84,9 @@ def _form(kind: type[Element], name: str) -> str:
 
 def write_connection(kind: type[Element], names: tuple[str, ...]) -> list[str]:
     """The words of a connection, one a name; an arrow stands in the word behind it."""
+    form = shape(kind.kind)
+    marks = form.marks * (len(names) // len(form.marks) if form.repeats else 1)
     return [
         f"> {name}" if mark == ">" else f"{mark}{name}"
-        for mark, name in zip(shape(kind.kind).marks, names, strict=True)
+        for mark, name in zip(marks, names, strict=True)
     ]

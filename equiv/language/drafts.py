@@ -7,7 +7,7 @@ from __future__ import annotations
 
 import re
 from functools import cache
-from typing import NamedTuple
+from typing import Any, NamedTuple
 
 from equiv.elements import KINDS, Element
 from equiv.elements.element import Field, Options, Parameters
@@ -55,12 +55,12 @@ class Draft(NamedTuple):
     def _value(self, scope: Scope) -> Value | Parameters:
         kind = self.kind
         if is_single(kind):
-            (value,) = self.values[kind.fields[0].name]
+            value: Any = self.values[kind.fields[0].name][0]
             return value.evaluate(scope) if isinstance(value, LaterValue) else value
-        items: list[tuple[str, tuple[Value, ...]]] = []
+        items: list[tuple[str, tuple[Any, ...]]] = []
         for field in kind.fields:
             if field.name in self.values:
-                numbers = tuple(
+                numbers: tuple[Any, ...] = tuple(
                     v.evaluate(scope) if isinstance(v, LaterValue) else v
                     for v in self.values[field.name]
                 )

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 from decimal import Decimal
 from fractions import Fraction
+from typing import NamedTuple
 
 from equiv.elements.element import Field, Frequency
+from equiv.elements.tabulated import Tabulated
 from equiv.language.amounts import Amount, Later, Place, Written, read_amount, unit_words
 from equiv.language.dimensions import PER_SECOND
 from equiv.language.mistakes import Mistake
@@ -36,20 +38,30 @@ class LaterValue:
         return fit(amount, self._unit, self.may_be_complex, self._place, self._text)
 
 
-FieldValue = Value | LaterValue
+class FileName(NamedTuple):
+    """A file that gives the values: its name and place; the reader puts a table in its place."""
+
+    name: str
+    place: Place
+
+
+FieldValue = Value | LaterValue | FileName | Tabulated
 
 
 def read_field(words: Words, field: Field, hint: str) -> tuple[FieldValue, ...]:
     """The values of a field, from the words that stand next."""
     if field.form == "ratio":
         return (read_number(words, "ratio", False, "a ratio, as in 10:1", hint),)
+    if field.form == "file":
+        place = words.next.place
+        return (FileName(words.text("a file's name"), place),)
     wanted = f"a value in {unit_words(field.units[0])}" if field.units[0] else "a number"
     return tuple(read_number(words, unit, field.complex, wanted, hint) for unit in field.units)
 
 
 def read_number(
     words: Words, unit: str, may_be_complex: bool, wanted: str, hint: str | None = None
-) -> FieldValue:
+) -> Value | LaterValue:
     """One value in a unit (`ratio` for a ratio)."""
     start = words.taken
     written = read_amount(words, wanted, hint)

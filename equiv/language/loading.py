@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import replace
 from decimal import localcontext
+from functools import partial
 from pathlib import Path
 
 from equiv.language.arguments import arguments
@@ -27,8 +28,7 @@ def load(
     path = Path(path)
     data = read_bytes(path)
     text = decoded(data, path.name)
-    network = read_text(Text(path.name, text), path, given, frequency)
-    return replace(network, origin=Origin(path.name, digest(data)))
+    return _read(Text(path.name, text), path, given, frequency, Origin(path.name, digest(data)))
 
 
 def parse(
@@ -42,8 +42,31 @@ def parse(
     """The network of a text; `read` statements need the folder that they start from."""
     origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
     path = folder / "text" if folder is not None else None
-    network = read_text(Text(name or "text", text), path, given, frequency)
-    return replace(network, origin=origin)
+    return _read(Text(name or "text", text), path, given, frequency, origin)
+
+
+def _read(
+    text: Text,
+    path: Path | None,
+    given: Mapping[str, str] | None,
+    frequency: str | None,
+    origin: Origin,
+) -> Network:
+    """The network of a text, with the means to read it again."""
+    again = partial(_again, text.name, text.text, path, given or {}, frequency, origin)
+    return replace(read_text(text, path, given, frequency), origin=origin, again=again)
+
+
+def _again(
+    name: str,
+    text: str,
+    path: Path | None,
+    given: Mapping[str, str],
+    frequency: str | None,
+    origin: Origin,
+    values: Mapping[str, str],
+) -> Network:
+    return _read(Text(name, text), path, {**given, **values}, frequency, origin)
 
 
 def read_text(

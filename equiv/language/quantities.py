@@ -1,4 +1,4 @@
-"""The words for quantities: `V:a`, `V:a,b`, `V:R3`, `I:R3`, `P:R3`, `V2:T1`, `I2:T1`."""
+"""The words for quantities: `V:a`, `V:a,b`, `V:R3`, `I:R3`, `P:R3`, `V2:T1`, `I3:N1`."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ from equiv.errors import Diagnostic, Span, UsageError
 from equiv.language.mistakes import Mistake
 from equiv.language.names import require_name
 
-_FORM = re.compile(r"([VIP])([12]?):(.*)", re.DOTALL)
+_FORM = re.compile(r"([VIP])([1-9][0-9]{0,2})?:(.*)", re.DOTALL)
 FORMS = "quantities are written V:a, V:a,b, V:R3, I:R3 or P:R3"
 
 
@@ -33,14 +33,15 @@ def read_quantity(text: str, at: int) -> Quantity:
             place,
             hint=FORMS,
         )
-    if what == "P" and number == "2":
+    pair = int(number or 1) - 1
+    if what == "P" and pair:
         raise Mistake(
             "bad-quantity",
             f"{text}: a power is that of the whole element",
             place,
             hint=f"write P:{names[0]}",
         )
-    return Quantity(what, tuple(names), 1 if number == "2" else 0)
+    return Quantity(what, tuple(names), pair)
 
 
 def quantity(text: str) -> Quantity:

@@ -10,6 +10,7 @@ from pathlib import Path
 from equiv.elements import KINDS
 from equiv.errors import FileAccessError
 from equiv.language.amounts import Written
+from equiv.language.attached import Files, Tables
 from equiv.language.blocks import Block, Body
 from equiv.language.bulk import read_plain
 from equiv.language.drafts import read_element
@@ -17,7 +18,7 @@ from equiv.language.files import Text, decoded, included_path, read_bytes
 from equiv.language.handlers import Asked, Once
 from equiv.language.keywords import HANDLERS
 from equiv.language.limits import MOST_FILES, MOST_LINE, MOST_NESTING
-from equiv.language.mistakes import Mistake
+from equiv.language.mistakes import AlreadyReported, Mistake
 from equiv.language.reports import Argument, Reports
 from equiv.language.words import Statement, Word, Words, comment_start, unquoted
 
@@ -57,6 +58,7 @@ class Reader:
         self._files = 0
         self._bytes = 0
         self._in_bulk_from = in_bulk_from
+        self._tables = Tables(Files(self._located, self._content), self.reports)
 
     @property
     def _body(self) -> Body:
@@ -130,6 +132,8 @@ class Reader:
             self._read_statement(match[1], statement, depth)
         except Mistake as mistake:
             self._report(mistake, statement)
+        except AlreadyReported:
+            self._doubt(statement)
         return at
 
     def _continued(self, first: Statement, lines: list[str], at: int) -> tuple[Statement, int]:
@@ -178,7 +182,7 @@ class Reader:
         elif kind is not None:
             words = Words(statement)
             words.taken = 1
-            body.entries.append(read_element(words, kind))
+            body.entries.append(self._tables.attach(read_element(words, kind)))
         else:
             raise _unknown_keyword(first, statement)
         if isinstance(body, Block):
@@ -189,6 +193,9 @@ class Reader:
 
     def _report(self, mistake: Mistake, statement: Statement) -> None:
         self.reports.add(mistake, statement)
+        self._doubt(statement)
+
+    def _doubt(self, statement: Statement) -> None:
         if len(self.doubtful) < MOST_LINE:
             names = re.split(r"[\s()>,:=]+", statement.text[:MOST_LINE])
             self.doubtful.update(name.lstrip("+-") for name in names)
@@ -209,23 +216,31 @@ class Reader:
 
     def include(self, words: Words, name: Word) -> None:
         """Read another file's statements here."""
-        if self._root is None:
-            raise Mistake("no-folder", "this text is in no folder to read files from", name.place)
-        folder = self._path[-1].parent
-        path = included_path(unquoted(name.text), name.place, folder, self._root)
+        path = self._located(unquoted(name.text), name.place)
         if path in self._path:
             raise Mistake("circular-read", f"{path.name} reads itself", name.place)
+        self.read(self._content(path, name.place), path)
+
+    def _located(self, name: str, place: tuple[int, int]) -> Path:
+        """A file named relative to the folder of this one, and inside the network's."""
+        if self._root is None:
+            raise Mistake("no-folder", "this text is in no folder to read files from", place)
+        return included_path(name, place, self._path[-1].parent, self._root)
+
+    def _content(self, path: Path, place: tuple[int, int]) -> Text:
+        """What is in a file, called by its name relative to the network's folder."""
+        assert self._root is not None
         self._files += 1
         if len(self._path) > MOST_NESTING or self._files > MOST_FILES:
-            raise Mistake("too-many-files", "too many files read each other", name.place)
+            raise Mistake("too-many-files", "too many files read each other", place)
         try:
             data = read_bytes(path, self._bytes)
             content = decoded(data, path.name)
         except FileAccessError as error:
             found = error.diagnostics[0]
-            raise Mistake(found.code, found.message, name.place, hint=found.hint) from None
+            raise Mistake(found.code, found.message, place, hint=found.hint) from None
         self._bytes += len(data)
-        self.read(Text(path.relative_to(self._root).as_posix(), content), path)
+        return Text(path.relative_to(self._root).as_posix(), content)
 
 
 def _barriers(lines: list[str]) -> list[int]:

@@ -108,6 +108,8 @@ def _values(element: Element) -> list[str]:
             numbers = dict(value.items)[field.name]
             if field.form == "ratio":
                 texts = [_ratio(*numbers)]
+            elif field.form == "file":
+                texts = [_quoted(numbers[0].file)]
             else:
                 texts = [_value(v, unit) for v, unit in zip(numbers, field.units, strict=True)]
             words.append(" ".join([*([field.keyword] if field.keyword else []), *texts]))

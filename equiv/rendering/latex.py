@@ -17,7 +17,7 @@ _SPECIALS = {
     "<": r"\textless{}", ">": r"\textgreater{}", "|": r"\textbar{}", '"': r"\char34{}",
     "`": r"\char96{}", "[": "{[}", "]": "{]}", "*": "{*}",
     "°": r"$^\circ$", "∠": r"$\angle$", "±": r"$\pm$", "×": r"$\times$", "·": r"$\cdot$",
-    "≤": r"$\le$", "≥": r"$\ge$", "√": r"$\surd$", "−": "$-$", "–": "--", "—": "---",
+    "≤": r"$\le$", "≥": r"$\ge$", "√": r"$\surd{}$", "−": "$-$", "–": "--", "—": "---",
     "Σ": r"$\Sigma$", "→": r"$\to$", "¹": "$^1$", "²": "$^2$", "³": "$^3$", "⁻": "$^-$",
     "≈": r"$\approx$", "≠": r"$\neq$", "∞": r"$\infty$", "…": r"\ldots{}", "µ": r"$\mu{}$",
     "\u2126": r"$\Omega$", "“": "``", "”": "''", "’": "'",
@@ -95,9 +95,10 @@ def _table(table: Table, digits: int) -> Iterator[str]:
     for words, face in ((table.title, r"\textbf"), *((words, "") for words in table.subtitles)):
         if words:
             yield rf"\noindent {face}{{{literal(words)}}}\par"
-    if table.text is not None:
+    text = table.text_in(unicode=False)
+    if text is not None:
         yield r"\begin{verbatim}"
-        yield from map(_verbatim, table.text.splitlines())
+        yield from map(_verbatim, text.splitlines())
         yield r"\end{verbatim}"
     elif table.columns:
         yield from _tabular(drawn_columns(table, digits, UNICODE), table.rows)

@@ -6,6 +6,8 @@ from typing import NamedTuple
 
 from equiv.errors import printable
 
+_SPELT = str.maketrans({"±": "+-", "·": "*", "²": "^2", "√": "sqrt "})
+
 
 class Marks(NamedTuple):
     """The signs of one way of writing."""
@@ -19,14 +21,14 @@ class Marks(NamedTuple):
 
     def unit(self, prefix: str, unit: str) -> str:
         """A unit with its prefix: `mA`, `kΩ`."""
-        sign = self.ohm if unit == "ohm" else printable(unit)
+        sign = self.ohm if unit == "ohm" else self.text(unit)
         return (self.micro if prefix == "u" else prefix) + sign
 
     def text(self, text: str) -> str:
         """A text made harmless, and plain where the signs are."""
         safe = printable(text)
         if self is PLAIN and not safe.isascii():
-            safe = safe.replace("µ", self.micro).replace("Ω", self.ohm)
+            safe = safe.replace("µ", self.micro).replace("Ω", self.ohm).translate(_SPELT)
             return safe.encode("ascii", "backslashreplace").decode("ascii")
         return safe
 

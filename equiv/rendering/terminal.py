@@ -45,9 +45,10 @@ def _table(table: Table, digits: int, width: int | None, marks: Marks) -> Iterat
     prose = width or PROSE_WIDTH
     for words in (table.title, *table.subtitles):
         yield from wrap(marks.text(words), prose) if words else ()
-    if table.text is not None:
+    text = table.text_in(unicode=marks is UNICODE)
+    if text is not None:
         yield ""
-        yield from (marks.text(line) for line in table.text.splitlines())
+        yield from (marks.text(line) for line in text.splitlines())
     elif table.columns:
         drawn = _indented(drawn_columns(table, digits, marks), table.rows)
         for part in _parts([_strip(column) for column in drawn], width):

@@ -9,6 +9,7 @@ from pathlib import Path
 from equiv.elements import KINDS
 from equiv.errors import EquivError
 from equiv.language import Builder, load, parse, write
+from equiv.language.loads import load_curve, read_loads
 from equiv.network import Network
 
 CASES = Path(__file__).parent / "cases"
@@ -34,6 +35,18 @@ def _network(name: str = "R1", value: Decimal = Decimal(1), title: str = "") -> 
 
 
 CALLS: Mapping[str, list[Callable[[], object]]] = {
+    "bad-power-factor": [
+        lambda: read_loads("power 50 W pf 1.2 lag"),
+        lambda: read_loads("power 50 W pf 0 lead"),
+    ],
+    "missing-column": [
+        lambda: load_curve("voltage [V]\n1\n2\n", "curve.csv"),
+        lambda: load_curve("voltage [V],± current [A]\n1,2\n", "curve.csv"),
+    ],
+    "no-number": [lambda: read_loads("8 ohm ?")],
+    "not-a-load": [lambda: read_loads("8 ohm shrt"), lambda: read_loads("8 ohm lamp")],
+    "twice": [lambda: load_curve("voltage [V],voltage [mV],current [A]\n", "curve.csv")],
+    "wrong-cells": [lambda: load_curve("voltage [V],current [A]\n1,2\n3\n4,5,6\n", "curve.csv")],
     "bad-text": [lambda: Builder(title="a\nvoltage V1 +a -gnd 1 V")],
     "bad-value": [
         lambda: Builder().resistor("R1", "a", "gnd", float("nan")),

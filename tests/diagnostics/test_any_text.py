@@ -20,7 +20,7 @@ fuzzed = settings(derandomize=True, max_examples=150, deadline=None)
 WORDS = [
     *KINDS, *STATEMENTS, *OPTIONS, "senses", "k", "M", "mu", "r", "z", "abcd", "ratio", "gain",
     "a", "b", "gnd", "R1", "X", "+a", "-b", "a>b", ">", "V:a", "V:a,b", "I:R1", "I2:X.R1", "P:X",
-    "5", "4k7", "R47", "3-4j", "120 V @ 30 deg", "10:1", "0:0", "5%", "?", "(2*n)", "(1/3) ohm",
+    "file", '"parts/good.s2p"', "5", "4k7", "R47", "3-4j", "120 V @ 30 deg", "10:1", "0:0", "5%", "?", "(2*n)", "(1/3) ohm",
     "n", "n=3", "=", "(a b)", "(", ")", "((", '"', '"x"', "#", "\\", "@", "∠", "1e999", "kohm",
     "1e-400", "Ω", "\u0000", "\u202e", "\ud800", "\r", "\t", "½", "²", "∞", "nan", "(exp(n^n))",
 ]  # fmt: skip
@@ -43,7 +43,7 @@ def survives(text: str) -> None:
         assert str(error)
         return
     assert isinstance(network, Network)
-    assert parse(write(network)) == network
+    assert parse(write(network), folder=CASES) == network
 
 
 @given(st.lists(st.lists(st.sampled_from(WORDS), max_size=9).map(" ".join), max_size=12))

@@ -48,6 +48,7 @@ WRONG = {
     "+p -n out": ["p n out", "+p -n +out", "-p +n out", "+p > -n out"],
     "+p -q +s -t": ["p q s t", "+p -q s t", "+p -q -s +t"],
     "+a -b +c -d": ["a b c d", "+a -b"],
+    "+a -b …": ["a b", "+a", "+a b", "+a -b -c +d", "+a -b +c"],
     "L1 L2": ["+L1 -L2"],
 }
 
@@ -67,6 +68,7 @@ def test_the_wrong_form_is_told_the_right_one(kind: str) -> None:
 @pytest.mark.parametrize("kind", sorted(KINDS))
 def test_what_is_written_bears_the_marks(kind: str) -> None:
     declared = KINDS[kind].connection
+    declared = declared.removesuffix(" …")
     names = tuple(word.lstrip("+-") for word in declared.split() if word != ">")
     assert " ".join(write_connection(KINDS[kind], names)) == declared
     assert len(shape(kind).marks) == len(names)

@@ -31,7 +31,7 @@ def test_forms(text: str, expected: Quantity) -> None:
 @pytest.mark.parametrize(
     "text",
     [
-        "", "V", "V:", "V:,", "V:a,", "V:a,b,c", "I:a,b", "P:a,b", "v:a", "Q:a", "V3:a", "V2:a,b",
+        "", "V", "V:", "V:,", "V:a,", "V:a,b,c", "I:a,b", "P:a,b", "v:a", "Q:a", "V0:a", "V2:a,b",
         "P2:a", "V a", "V: a", "V:a b", "V:a\n", "V(a)", "I:R3:", "V:a,b ", "V:(a)", "V:" + "a" * 300,
     ],
 )  # fmt: skip
