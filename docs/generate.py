@@ -97,7 +97,9 @@ def library() -> str:
     import equiv
 
     parts = [""]
-    for name in ("load", "parse", "write", "check", "solve", "superpose", "isolate", "port"):
+    names = ("load", "parse", "write", "check", "solve", "superpose", "isolate", "port",
+             "load_port", "match", "loadtest")  # fmt: skip
+    for name in names:
         function = getattr(equiv, name)
         signature = re.sub(r"'", "", str(inspect.signature(function)))
         signature = re.sub(r"<function (\w+) at \w+>", r"\1", signature)

@@ -15,6 +15,9 @@ if TYPE_CHECKING:
     from equiv.analyses.check import check as check
     from equiv.analyses.isolate import isolate as isolate
     from equiv.analyses.kinds import kinds as kinds
+    from equiv.analyses.load import load_port as load_port
+    from equiv.analyses.loadtest import loadtest as loadtest
+    from equiv.analyses.match import match as match
     from equiv.analyses.port import port as port
     from equiv.analyses.sample import sample as sample
     from equiv.analyses.solve import solve as solve
@@ -27,6 +30,7 @@ if TYPE_CHECKING:
     from equiv.errors import UsageError as UsageError
     from equiv.language import Builder as Builder
     from equiv.language import load as load
+    from equiv.language import load_curve as load_curve
     from equiv.language import parse as parse
     from equiv.language import quantity as quantity
     from equiv.language import write as write
@@ -47,6 +51,10 @@ __all__ = [
     "isolate",
     "kinds",
     "load",
+    "load_curve",
+    "load_port",
+    "loadtest",
+    "match",
     "parse",
     "port",
     "quantity",
@@ -56,15 +64,29 @@ __all__ = [
     "write",
 ]
 
-_ANALYSES = frozenset({"check", "isolate", "kinds", "port", "sample", "solve", "superpose"})
-_LANGUAGE = frozenset({"Builder", "load", "parse", "quantity", "write"})
+_ANALYSES = frozenset(
+    {
+        "check",
+        "isolate",
+        "kinds",
+        "load_port",
+        "loadtest",
+        "match",
+        "port",
+        "sample",
+        "solve",
+        "superpose",
+    }
+)
+_LANGUAGE = frozenset({"Builder", "load", "load_curve", "parse", "quantity", "write"})
 
 
 def __getattr__(name: str) -> object:
     """The named part of the library, imported now."""
     if name in _ANALYSES:
         import_module("equiv.rendering")  # so that the result can show itself
-        module = f"equiv.analyses.{name}"
+        # `load` reads a file; the command of that name is `load_port` here
+        module = f"equiv.analyses.{name.removesuffix('_port')}"
     elif name in _LANGUAGE:
         module = "equiv.language"
     elif name == "Network":
