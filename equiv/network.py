@@ -10,7 +10,7 @@ from operator import methodcaller
 from typing import NamedTuple
 
 from equiv.elements import Element
-from equiv.elements.element import Frequency
+from equiv.elements.element import Frequency, Parameters
 from equiv.elements.quantity import Quantity
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.units import Value, write_value
@@ -129,6 +129,13 @@ class Network:
     def controlled(self) -> tuple[Element, ...]:
         """The controlled sources, in the order of the file."""
         return tuple(e for e in self.elements.values() if e.role == "controlled")
+
+    @cached_property
+    def tabulated(self) -> tuple[Element, ...]:
+        """The elements whose parameters come from a file."""
+        return tuple(
+            e for e in self.elements.values() if isinstance(e.value, Parameters) and e.table
+        )
 
     @cached_property
     def groups(self) -> Mapping[str, tuple[str, ...]]:

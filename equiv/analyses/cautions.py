@@ -25,9 +25,10 @@ def about_network(network: Network, headings: Iterable[str] = ()) -> list[Cautio
     """Warnings that belong to every result of a network."""
     found = [Caution("unstable", _unstable(s)) for s in unstable_frequencies(network)[:1]]
     found += interpolated(network)
-    words = [network.title, *network.notes, *headings, *network.elements]
-    words += [find.label or "" for find in network.finds]
-    if any(duty in text.lower() for text in words for duty in _DUTY_WORDS):
+    labels = [find.label or "" for find in network.finds]
+    words = "\n".join((network.title, *network.notes, *headings, *labels, *network.elements))
+    words = words.lower()
+    if any(duty in words for duty in _DUTY_WORDS):
         found.append(DUTY)
     return found
 
@@ -37,7 +38,7 @@ def interpolated(network: Network) -> list[Caution]:
 
     A frequency outside its points is left out: only a solution there is refused.
     """
-    tables = {e.table.file: e.table for e in network.elements.values() if e.table}
+    tables = {e.table.file: e.table for e in network.tabulated if e.table}
     found = []
     for frequency in network.frequencies:
         for table in tables.values():

@@ -184,5 +184,9 @@ def rounding_of(solver: Solver, plans: Sequence[Plan], quantity: Quantity) -> Nu
     return solver.rounding(quantity, np.stack([*columns, solver.u], axis=1))
 
 
+_RATIO_UNITS = {("A", "V"): "S", ("V", "A"): "ohm"}
+
+
 def ratio_unit(over: str, under: str) -> str:
-    return {("A", "V"): "S", ("V", "A"): "ohm"}.get((over, under), "1")
+    """The SI unit of a coefficient; 1 for a pure number."""
+    return _RATIO_UNITS.get((over, under), "1")

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import defaultdict
 from collections.abc import Iterable, Sequence
 from functools import cached_property
 from itertools import compress
@@ -35,9 +36,7 @@ class Layout:
         self._lay_out()
 
     def _lay_out(self) -> None:
-        members: dict[tuple[type[Element], tuple[str, ...]], list[int]] = {}
-        for number, element in enumerate(self.elements):
-            members.setdefault((type(element), element.variant), []).append(number)
+        members = self._members()
         counts = np.empty(len(self.elements), dtype=np.int64)
         for numbers in members.values():
             counts[numbers] = len(self.elements[numbers[0]].pairs)
@@ -46,6 +45,20 @@ class Layout:
         self.tail = np.full(self.branch_count, GROUND)
         self.head = np.full(self.branch_count, GROUND)
         self.columns = [self._column(variant, group) for (_, variant), group in members.items()]
+
+    def _members(self) -> dict[tuple[type[Element], tuple[str, ...]], list[int]]:
+        """The elements of each kind and variant; only kinds with several values have variants."""
+        kinds: defaultdict[type[Element], list[int]] = defaultdict(list)
+        for number, element in enumerate(self.elements):
+            kinds[type(element)].append(number)
+        members: dict[tuple[type[Element], tuple[str, ...]], list[int]] = {}
+        for kind, numbers in kinds.items():
+            if not isinstance(self.elements[numbers[0]].value, Parameters):
+                members[kind, ()] = numbers
+                continue
+            for number in numbers:
+                members.setdefault((kind, self.elements[number].variant), []).append(number)
+        return members
 
     def _column(self, variant: tuple[str, ...], numbers: list[int]) -> ElementColumn:
         elements = [self.elements[i] for i in numbers]

@@ -40,7 +40,7 @@ def unstable_frequencies(network: Network) -> list[complex]:
     elements = network.elements.values()
     if not any(e.kind in _DYNAMIC for e in elements) or not any(map(_is_active, elements)):
         return []
-    if any(e.table for e in elements):
+    if network.tabulated:
         return []  # what a file gives is known on the imaginary axis only
     layout = Layout(network)
     still = System(layout, "nodal", 0.0)

@@ -46,7 +46,9 @@ COMMANDS = {
 
 def output(words: str, columns: int | None) -> str:
     """What a command prints on both streams, and its exit status."""
-    env = {k: v for k, v in os.environ.items() if k not in ("COLUMNS", "NO_COLOR")}
+    # byte code is kept, so that a hundred processes do not each compile the package
+    left_out = ("COLUMNS", "NO_COLOR", "PYTHONDONTWRITEBYTECODE")
+    env = {k: v for k, v in os.environ.items() if k not in left_out}
     env["PYTHONUTF8"] = "1"
     if columns:
         env["COLUMNS"] = str(columns)
