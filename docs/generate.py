@@ -98,7 +98,7 @@ def library() -> str:
 
     parts = [""]
     names = ("load", "parse", "write", "check", "solve", "superpose", "isolate", "port",
-             "load_port", "match", "loadtest")  # fmt: skip
+             "load_port", "match", "sweep", "loadtest")  # fmt: skip
     for name in names:
         function = getattr(equiv, name)
         signature = re.sub(r"'", "", str(inspect.signature(function)))

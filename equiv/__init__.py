@@ -22,6 +22,7 @@ if TYPE_CHECKING:
     from equiv.analyses.sample import sample as sample
     from equiv.analyses.solve import solve as solve
     from equiv.analyses.superpose import superpose as superpose
+    from equiv.analyses.sweep import sweep as sweep
     from equiv.errors import DoesNotExistError as DoesNotExistError
     from equiv.errors import EquivError as EquivError
     from equiv.errors import FileAccessError as FileAccessError
@@ -61,6 +62,7 @@ __all__ = [
     "sample",
     "solve",
     "superpose",
+    "sweep",
     "write",
 ]
 
@@ -76,6 +78,7 @@ _ANALYSES = frozenset(
         "sample",
         "solve",
         "superpose",
+        "sweep",
     }
 )
 _LANGUAGE = frozenset({"Builder", "load", "load_curve", "parse", "quantity", "write"})
