@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from equiv.analyses.terms import FrequencyTerms, QuantityTerms
+from equiv.analyses.superposition.terms import FrequencyTerms, QuantityTerms
 from equiv.elements.element import Frequency
 from equiv.network import Network
 from equiv.units import write_value

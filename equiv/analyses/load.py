@@ -10,14 +10,14 @@ from typing import Any, ClassVar
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
 from equiv.analyses.headings import frequency_words
-from equiv.analyses.load_points import Line, Point, points
-from equiv.analyses.load_proof import prove, same, why_none
-from equiv.analyses.load_state import LoadState, LoadTotal, PortLoads, largest, total
-from equiv.analyses.load_tables import load_data, load_tables, total_data, total_table
+from equiv.analyses.loading.points import Line, Point, points
+from equiv.analyses.loading.proof import prove, same, why_none
+from equiv.analyses.loading.state import LoadState, LoadTotal, PortLoads, largest, total
+from equiv.analyses.loading.tables import load_data, load_tables, total_data, total_table
 from equiv.analyses.port import equivalent, find_port
 from equiv.analyses.result import Caution, Check, Result
+from equiv.analyses.superposition.terms import CLOSURE_LIMIT
 from equiv.analyses.tables import Table
-from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements.element import Frequency
 from equiv.errors import Diagnostic, ExitStatus, UsageError
 from equiv.language.loads import HINT, Load, read_loads

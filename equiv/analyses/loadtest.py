@@ -10,12 +10,12 @@ from typing import Any, ClassVar, NamedTuple
 
 import numpy as np
 
-from equiv.analyses.loadtest_fit import Fit, fit
-from equiv.analyses.loadtest_readings import Readings, read_readings, refuse
-from equiv.analyses.loadtest_tables import loadtest_data, loadtest_tables
+from equiv.analyses.readings.fit import Fit, fit
+from equiv.analyses.readings.readings import Readings, read_readings, refuse
+from equiv.analyses.readings.tables import loadtest_data, loadtest_tables
 from equiv.analyses.result import Caution, Check, Result
+from equiv.analyses.superposition.terms import CLOSURE_LIMIT
 from equiv.analyses.tables import Table
-from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.network import Network, Origin
 
 _NAMES = {

@@ -6,16 +6,16 @@ from dataclasses import dataclass, replace
 from typing import Any, ClassVar, Literal
 
 from equiv.analyses.closing import closing_table
-from equiv.analyses.match_data import match_data
-from equiv.analyses.match_found import Found
-from equiv.analyses.match_ladder import Losses
-from equiv.analyses.match_loads import LoadMatch, loads_of
-from equiv.analyses.match_networks import MatchingNetwork, matching_networks, sections_of
-from equiv.analyses.match_proof import match_cautions, match_checks
-from equiv.analyses.match_sections import already_matched
-from equiv.analyses.match_source import OverFrequency, PortSource, source_at
-from equiv.analyses.match_tables import match_tables
-from equiv.analyses.match_words import NETWORKS, Words, angle_of, number_of, wanted_of
+from equiv.analyses.matching.data import match_data
+from equiv.analyses.matching.found import Found
+from equiv.analyses.matching.ladder import Losses
+from equiv.analyses.matching.loads import LoadMatch, loads_of
+from equiv.analyses.matching.networks import MatchingNetwork, matching_networks, sections_of
+from equiv.analyses.matching.proof import match_cautions, match_checks
+from equiv.analyses.matching.sections import already_matched
+from equiv.analyses.matching.source import OverFrequency, PortSource, source_at
+from equiv.analyses.matching.tables import match_tables
+from equiv.analyses.matching.words import NETWORKS, Words, angle_of, number_of, wanted_of
 from equiv.analyses.port import find_port
 from equiv.analyses.preferred import Series
 from equiv.analyses.result import Result

@@ -9,21 +9,21 @@ from typing import Any, ClassVar, NamedTuple
 from equiv.analyses.cautions import about_network, interpolated
 from equiv.analyses.closing import closing_table
 from equiv.analyses.headings import frequency_words
-from equiv.analyses.port_choice import chosen_ports
-from equiv.analyses.port_choice import find_port as find_port
-from equiv.analyses.port_equivalent import equivalent as equivalent
-from equiv.analyses.port_form_proof import proved
-from equiv.analyses.port_form_tables import form_data, form_tables
-from equiv.analyses.port_forms import PortForm, existing, in_form
-from equiv.analyses.port_frequencies import Given, frequencies_of, network_at
-from equiv.analyses.port_proof import Equivalent, blackman, three_loads
-from equiv.analyses.port_references import Ohms, checked_form, references_of
-from equiv.analyses.port_tables import port_data, port_tables
-from equiv.analyses.port_tests import with_tests as with_tests
-from equiv.analyses.port_touchstone import touchstone_sources, touchstone_text
+from equiv.analyses.ports.choice import chosen_ports
+from equiv.analyses.ports.choice import find_port as find_port
+from equiv.analyses.ports.equivalent import equivalent as equivalent
+from equiv.analyses.ports.form_proof import proved
+from equiv.analyses.ports.form_tables import form_data, form_tables
+from equiv.analyses.ports.forms import PortForm, existing, in_form
+from equiv.analyses.ports.frequencies import Given, frequencies_of, network_at
+from equiv.analyses.ports.proof import Equivalent, blackman, three_loads
+from equiv.analyses.ports.references import Ohms, checked_form, references_of
+from equiv.analyses.ports.tables import port_data, port_tables
+from equiv.analyses.ports.tests import with_tests as with_tests
+from equiv.analyses.ports.touchstone import touchstone_sources, touchstone_text
 from equiv.analyses.result import Caution, Check, Result
+from equiv.analyses.superposition.terms import CLOSURE_LIMIT
 from equiv.analyses.tables import Table
-from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements.element import Frequency
 from equiv.errors import Diagnostic, DoesNotExistError, ExitStatus
 from equiv.network import Network, Port, Progress, no_progress

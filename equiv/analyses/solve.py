@@ -9,8 +9,8 @@ from equiv.analyses.cautions import about_network, about_solver
 from equiv.analyses.closing import closing_table
 from equiv.analyses.headings import at_words, frequency_words
 from equiv.analyses.result import Caution, Check, Result, finite, pair
+from equiv.analyses.superposition.terms import CLOSURE_LIMIT
 from equiv.analyses.tables import Cell, Column, Row, Table
-from equiv.analyses.terms import CLOSURE_LIMIT
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
 from equiv.equations.solution import CLEANED_UP_TO, Solver, State, all_on

@@ -8,19 +8,19 @@ from typing import Any, ClassVar, Literal
 
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
-from equiv.analyses.finder import TermFinder
 from equiv.analyses.headings import at_words
 from equiv.analyses.result import Caution, Check, Result
-from equiv.analyses.superpose_data import quantity_data
-from equiv.analyses.superpose_tables import askable, askable_tables, quantity_tables
-from equiv.analyses.tables import Table
-from equiv.analyses.terms import (
+from equiv.analyses.superposition.data import quantity_data
+from equiv.analyses.superposition.finder import TermFinder
+from equiv.analyses.superposition.tables import askable, askable_tables, quantity_tables
+from equiv.analyses.superposition.terms import (
     CLOSURE_LIMIT,
     NOTABLE_CANCELLATION,
     TERM_LIMIT,
     FrequencyTerms,
     QuantityTerms,
 )
+from equiv.analyses.tables import Table
 from equiv.elements.quantity import Quantity
 from equiv.errors import Diagnostic, ExitStatus, NoUniqueSolutionError
 from equiv.language import quantity as read_quantity

@@ -14,12 +14,12 @@ import numpy as np
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
 from equiv.analyses.result import DRAWERS, Caution, Check, Result
-from equiv.analyses.sweep_axis import FREQUENCY, Axis, End, axis
-from equiv.analyses.sweep_curves import Asked, Curve, asked_of, heading_of, positive_of
-from equiv.analyses.sweep_picture import picture_table, plots_of
-from equiv.analyses.sweep_points import Values, in_stacks, one_point
-from equiv.analyses.sweep_proof import Place, Proof, sample
-from equiv.analyses.sweep_tables import curve_data, curve_table, whole_table
+from equiv.analyses.sweeping.axis import FREQUENCY, Axis, End, axis
+from equiv.analyses.sweeping.curves import Asked, Curve, asked_of, heading_of, positive_of
+from equiv.analyses.sweeping.picture import picture_table, plots_of
+from equiv.analyses.sweeping.points import Values, in_stacks, one_point
+from equiv.analyses.sweeping.proof import Place, Proof, sample
+from equiv.analyses.sweeping.tables import curve_data, curve_table, whole_table
 from equiv.analyses.tables import Plot, Table
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity

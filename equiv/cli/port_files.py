@@ -24,7 +24,7 @@ def frequencies(
         raise UsageError(Diagnostic("half-a-range", "--from and --to go together", hint=hint))
     if first is None or last is None:
         return list(at)
-    from equiv.analyses.port_frequencies import spread
+    from equiv.analyses.ports.frequencies import spread
 
     return [*at, *spread(first, last, points, log)]
 

@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 from laws.random_networks import Maker, seeded, seeds
 
 import equiv
-from equiv.analyses.port_relation import by_tests, by_waves, solved_for
+from equiv.analyses.ports.relation import by_tests, by_waves, solved_for
 from equiv.elements.tabulated import Tabulated
 from equiv.equations.port_relation import null_space
 from equiv.equations.solution import source_values

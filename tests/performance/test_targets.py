@@ -65,7 +65,7 @@ def test_small_superposition_as_a_process(report: Report, tmp_path: Path) -> Non
 def test_reading(report: Report) -> None:
     text = grid_text()
     lines = text.count("\n")
-    took = seconds(lambda: equiv.parse(text), 3)
+    took = seconds(lambda: equiv.parse(text), 7)
     network = equiv.parse(text)
     assert network.place_of["Rv0_0"][1] == 3
     report(

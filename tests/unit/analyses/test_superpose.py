@@ -9,7 +9,7 @@ import pytest
 import equiv
 from equiv.analyses.result import Check
 from equiv.analyses.superpose import Superposition
-from equiv.analyses.terms import FrequencyTerms, Term
+from equiv.analyses.superposition.terms import FrequencyTerms, Term
 from equiv.errors import ExitStatus
 from equiv.network import DC
 

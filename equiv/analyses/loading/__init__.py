@@ -1,0 +1,1 @@
+"""Loads on a port, and their proof in the original network."""

@@ -1,0 +1,1 @@
+"""Ports: what is seen there, equivalents and parameters, and their proofs."""

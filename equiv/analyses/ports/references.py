@@ -1,0 +1,71 @@
+"""The form and the reference resistances that are asked for."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from decimal import Decimal
+from fractions import Fraction
+
+from equiv.analyses.ports.relation import FORMS, OF_TWO_PORTS
+from equiv.errors import Diagnostic, UsageError
+from equiv.language import value
+from equiv.units import as_number
+
+Ohms = str | int | float | Decimal | Fraction
+"""A resistance in ohms, or in the words of the language."""
+
+
+def checked_form(form: str | None, ports: int) -> None:
+    """Complain of a form that there is not, or not for so many ports."""
+    if form is not None and form not in FORMS:
+        raise UsageError(
+            Diagnostic(
+                "unknown-form",
+                f"there is no form called {form}",
+                hint=f"the forms are {', '.join(FORMS)}",
+            )
+        )
+    if form in OF_TWO_PORTS and ports != 2:
+        raise UsageError(
+            Diagnostic(
+                "two-ports-only",
+                f"{form} parameters are those of two ports; there {_are(ports)}",
+                hint="z, y and s are for any number of ports",
+            )
+        )
+
+
+def _are(ports: int) -> str:
+    return "is one" if ports == 1 else f"are {ports}"
+
+
+def references_of(reference: Ohms | Sequence[Ohms], ports: int) -> tuple[float, ...]:
+    """A real positive reference (ohm) for each port.
+
+    Errors: UsageError for another value, or for as many values as fit neither one nor each port.
+    """
+    given = [reference] if isinstance(reference, Ohms) else list(reference)
+    if len(given) not in (1, ports):
+        raise UsageError(
+            Diagnostic(
+                "wrong-references",
+                f"there are {len(given)} references for {ports} port{'s' if ports > 1 else ''}",
+                hint="give one for all ports, or one for each",
+            )
+        )
+    found = [_ohms(one) for one in given]
+    return tuple(found * ports if len(found) == 1 else found)
+
+
+def _ohms(given: Ohms) -> float:
+    number = as_number(value(given, "ohm")) if isinstance(given, str) else float(given)
+    if isinstance(number, complex) or not (math.isfinite(number) and number > 0):
+        raise UsageError(
+            Diagnostic(
+                "bad-reference",
+                f"expected a real positive resistance as the reference; found {given}",
+                hint="for example: --reference 50ohm",
+            )
+        )
+    return number

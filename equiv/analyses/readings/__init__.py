@@ -1,0 +1,1 @@
+"""Finding a port from its readings."""

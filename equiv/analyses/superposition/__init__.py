@@ -1,0 +1,1 @@
+"""Superposition: terms, their sub-circuits, powers and paths."""

@@ -1,0 +1,1 @@
+"""Sweeps: axes, points, curves and their pictures."""
