@@ -14,7 +14,7 @@ from equiv.equations.batch import Batch, Coefficients
 
 pytestmark = pytest.mark.performance
 Report = Callable[[str, str, str, str], None]
-ROUNDS = 5
+ROUNDS = 9
 
 
 def line_text(sections: int, side: int = 1) -> str:
