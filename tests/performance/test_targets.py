@@ -118,15 +118,17 @@ def test_contributions_on_a_factorisation(report: Report) -> None:
     solver = Solver(network, DC)
     factor = SparseFactor(solver.system)
     row = solver.row(asked[0]).state
-    one_factor = seconds(lambda: SparseFactor(solver.system), 3)
-    one_solve = seconds(lambda: factor.lu.solve(row, "T"), 5)
+    one_solve = seconds(lambda: factor.lu.solve(row, "T"), 9)
 
     def ours() -> None:
         solver._factor = SparseFactor(solver.system)
         for q in asked:
             solver.coefficients(q)
 
-    took = seconds(ours, 3)
+    one_factor, took = float("inf"), float("inf")
+    for _ in range(5):  # in turns, so that both see the same machine
+        one_factor = min(one_factor, seconds(lambda: SparseFactor(solver.system), 1))
+        took = min(took, seconds(ours, 1))
     limit = one_factor + len(asked) * one_solve
     report(
         "factorisation and contributions of 10 000 sources to 3 quantities against F + min(k, q) S",
