@@ -8,7 +8,7 @@ from typing import Any, ClassVar, NamedTuple
 
 from equiv.analyses.cautions import about_network, interpolated
 from equiv.analyses.closing import closing_table
-from equiv.analyses.headings import frequency_words
+from equiv.analyses.headings import at_words
 from equiv.analyses.ports.choice import chosen_ports
 from equiv.analyses.ports.choice import find_port as find_port
 from equiv.analyses.ports.equivalent import equivalent as equivalent
@@ -19,7 +19,6 @@ from equiv.analyses.ports.frequencies import Given, frequencies_of, network_at
 from equiv.analyses.ports.proof import Equivalent, blackman, three_loads
 from equiv.analyses.ports.references import Ohms, checked_form, references_of
 from equiv.analyses.ports.tables import port_data, port_tables
-from equiv.analyses.ports.tests import with_tests as with_tests
 from equiv.analyses.ports.touchstone import touchstone_sources, touchstone_text
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.superposition.terms import CLOSURE_LIMIT
@@ -186,7 +185,7 @@ def _required(
     found = in_form(network, e, form, references)
     if found.parameters is None:
         others = existing(network, e, references, but=form)
-        where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
+        where = at_words(e.frequency)
         message = f"{e.named} have no {form} parameters{where}: {found.reason}"
         if len(e.ports) == 1:
             message = message.replace(" have ", " has ", 1)
@@ -196,7 +195,7 @@ def _required(
 
 
 def _form_checks(network: Network, e: Equivalent, form: PortForm) -> list[Check]:
-    where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
+    where = at_words(e.frequency)
     off = proved(network, e, form)
     return (
         []
@@ -206,7 +205,7 @@ def _form_checks(network: Network, e: Equivalent, form: PortForm) -> list[Check]
 
 
 def _checks(network: Network, e: Equivalent) -> list[Check]:
-    where = f" at {frequency_words(e.frequency, '')}" if e.frequency.omega else ""
+    where = at_words(e.frequency)
     checks = []
     if e.thevenin and e.norton:
         checks.append(Check(f"Norton against Thevenin{where}", e.disagreement, CLOSURE_LIMIT))
@@ -214,7 +213,7 @@ def _checks(network: Network, e: Equivalent) -> list[Check]:
         off = three_loads(network, e)
         if off is not None:
             checks.append(Check(f"three loads{where}", off, CLOSURE_LIMIT))
-    off = blackman(network, e, with_tests)
+    off = blackman(network, e)
     if off is not None:
         checks.append(Check(f"Blackman's formula{where}", off, CLOSURE_LIMIT))
     return checks

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from decimal import Decimal
 
 import numpy as np
 
+from equiv.analyses.ports.tests import with_tests
 from equiv.analyses.superposition.paths import dead_network
 from equiv.elements import KINDS, Element
 from equiv.elements.element import Frequency, Options
@@ -23,8 +23,6 @@ AC_LOADS = (0.5 + 0.0j, 1.5 - 1.0j, 2.0 + 3.0j, 0.3 + 0.4j, 5.0 - 2.0j, 1.1 + 0.
 _ZERO = 1e-12
 _NOISE = 1e-9
 _LOADS = 3
-
-WithTests = Callable[[Network, Sequence[Port], Frequency, str], tuple[Network, list[str]]]
 
 
 @dataclass(frozen=True)
@@ -181,7 +179,7 @@ def _loaded(network: Network, e: Equivalent, load: complex, extra: float) -> Net
     return network.with_elements(elements)
 
 
-def blackman(network: Network, e: Equivalent, with_tests: WithTests) -> float | None:
+def blackman(network: Network, e: Equivalent) -> float | None:
     """|Z - Z0·(1 + T_short)/(1 + T_open)| / |Z|, for one port and one controlled source.
 
     Z0 is the impedance with the controlled source dead, T its return ratio with the port shorted

@@ -122,6 +122,15 @@ def _equivalents_table(e: Equivalent) -> Table:
                 at = f" {port.name}, {other.name}" if several else ""
                 value = None if matrix is None else matrix[p, q]
                 rows.append(row(name, second + at, value, over))
+    if not e.thevenin and not e.norton:
+        rows = []
+    columns = columns if rows else ()
+    return Table("Equivalents", (frequency_words(e.frequency),), columns, tuple(rows),
+                 tuple(_existence_notes(e)), name=f"equivalents{at_words(e.frequency)}")  # fmt: skip
+
+
+def _existence_notes(e: Equivalent) -> list[str]:
+    """Which equivalents exist, and why not."""
     notes = []
     if e.no_thevenin:
         notes.append(f"There is no Thevenin equivalent: {e.no_thevenin}.")
@@ -129,16 +138,12 @@ def _equivalents_table(e: Equivalent) -> Table:
         notes.append(f"There is no Norton equivalent: {e.no_norton}.")
     if e.thevenin and e.norton:
         notes.append("Both equivalents exist.")
-    if not e.thevenin and not e.norton:
-        if len(e.ports) > 1:
-            notes.append(
-                "Each port alone may have an equivalent: ask for them one at a time, or for a "
-                "mixed form (--form h)."
-            )
-        rows = []
-    columns = columns if rows else ()
-    return Table("Equivalents", (frequency_words(e.frequency),), columns, tuple(rows),
-                 tuple(notes), name=f"equivalents{at_words(e.frequency)}")  # fmt: skip
+    if not e.thevenin and not e.norton and len(e.ports) > 1:
+        notes.append(
+            "Each port alone may have an equivalent: ask for them one at a time, or for a "
+            "mixed form (--form h)."
+        )
+    return notes
 
 
 def tests_of(e: Equivalent) -> list[tuple[int, str, list[complex]]]:
