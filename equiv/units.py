@@ -24,6 +24,25 @@ _WIDE = Context(prec=10_000, Emax=999_999, Emin=-999_999)
 _MOST_PLACES = 300
 
 
+class Rounded:
+    """Marks a number that stands for an irrational one, to 40 digits."""
+
+
+class RoundedDecimal(Rounded, Decimal):
+    """A decimal number that was rounded."""
+
+
+class RoundedFraction(Rounded, Fraction):
+    """A fraction of rounded numbers."""
+
+
+def as_rounded(number: Number) -> Number:
+    """The number, marked as a rounded one."""
+    if isinstance(number, Rounded):
+        return number
+    return RoundedDecimal(number) if isinstance(number, Decimal) else RoundedFraction(number)
+
+
 class Rectangular(NamedTuple):
     """A complex value by its parts."""
 
@@ -118,8 +137,10 @@ def split_unit(text: str) -> tuple[str, int] | None:
 def scale(number: Number, power: int) -> Number:
     """An exact number times a power of ten, exactly."""
     if isinstance(number, Fraction):
-        return number * Fraction(10) ** power
-    return number.scaleb(power, _WIDE)
+        scaled: Number = number * Fraction(10) ** power
+    else:
+        scaled = number.scaleb(power, _WIDE)
+    return as_rounded(scaled) if isinstance(number, Rounded) else scaled
 
 
 def exact(number: Fraction) -> Number:

@@ -26,6 +26,7 @@ from equiv.units import (
     Ratio,
     Rectangular,
     Value,
+    as_rounded,
     exact,
     scale,
 )
@@ -119,7 +120,7 @@ def _when_known(expression: Expression, unit: str, text: str, place: Place) -> W
 
 
 def _evaluated(expression: Expression, unit: str, text: str, place: Place, scope: Scope) -> Amount:
-    number, dimension = expression.evaluate(scope)
+    number, dimension, rounded = expression.evaluate(scope)
     name, power = UNITS.get(unit, (unit_of(dimension), 0))
     if unit and dimension != NO_DIMENSION and (power or DIMENSIONS[name] != dimension):
         raise Mistake(
@@ -129,6 +130,8 @@ def _evaluated(expression: Expression, unit: str, text: str, place: Place, scope
         )
     result = bounded(scale(number, power), place)
     value = exact(Fraction(result))
+    if rounded:
+        value = as_rounded(value)
     kept = all(scope.find(n, place).top for n in expression.names)
     if kept and (expression.names or name not in DIMENSIONS):
         return Amount(Formula(text, value), name or None)

@@ -168,7 +168,7 @@ class _Parser:
         name, place = self.token, self.place
         self.advance()
         if name == "pi":
-            self.steps.append(Step("number", place, Measure(functions.PI)))
+            self.steps.append(Step("number", place, Measure(functions.PI, rounded=True)))
         elif name in RESERVED:
             if self.token != "(":
                 raise self.wrong(f"( behind {name}")

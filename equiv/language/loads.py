@@ -16,7 +16,7 @@ from equiv.language.readings import QUANTITIES, impossible, read_table
 from equiv.language.reports import Argument, Reports
 from equiv.language.scope import Scope
 from equiv.language.words import Words
-from equiv.units import Symbol, as_number
+from equiv.units import Symbol, Value, as_number
 
 KINDS = ("short", "open", "current", "power")
 HINT = "a load is written 8 ohm, 4+3j ohm, short, open, current 2 A or power 50 W"
@@ -36,6 +36,8 @@ class Load(NamedTuple):
     at: Frequency | None = None
     """The frequency of a current, where it is said."""
     points: tuple[tuple[float, float], ...] = ()
+    written: Value | None = None
+    """The value of an impedance or a current, exact as it was written."""
 
 
 def read_loads(text: str) -> tuple[Load, ...]:
@@ -79,19 +81,22 @@ def _load(words: Words) -> Load:
     start = words.taken
     first = words.peek()
     value: complex = 0.0
+    number: Value | None = None
     at: Frequency | None = None
     kind = first if first in KINDS else "impedance"
     if kind == "impedance":
         _require_number(words)
-        value = _number(words, "ohm", True, "a load")
+        number = _value(words, "ohm", True, "a load")
     else:
         words.take("a load")
     if kind == "current":
-        value = _number(words, "A", True, "a current, as in 2 A")
+        number = _value(words, "A", True, "a current, as in 2 A")
         at = _at(words)
     elif kind == "power":
         value = _power(words)
-    return Load(words.written(words.stretch(start)), kind, value, at)
+    if number is not None:
+        value = as_number(number)
+    return Load(words.written(words.stretch(start)), kind, value, at, written=number)
 
 
 def _require_number(words: Words) -> None:
@@ -107,6 +112,10 @@ def _require_number(words: Words) -> None:
 
 
 def _number(words: Words, unit: str, may_be_complex: bool, wanted: str) -> complex:
+    return as_number(_value(words, unit, may_be_complex, wanted))
+
+
+def _value(words: Words, unit: str, may_be_complex: bool, wanted: str) -> Value:
     place = words.next.place
     try:
         found = read_number(words, unit, may_be_complex, wanted, HINT)
@@ -117,7 +126,7 @@ def _number(words: Words, unit: str, may_be_complex: bool, wanted: str) -> compl
     value = found.evaluate(Scope()) if isinstance(found, LaterValue) else found
     if isinstance(value, Symbol):
         raise Mistake("no-number", "a load needs a number; found ?", place)
-    return as_number(value)
+    return value
 
 
 def _at(words: Words) -> Frequency | None:

@@ -11,12 +11,19 @@ from equiv.language.dimensions import NO_DIMENSION, Dimension, in_words
 from equiv.language.limits import MOST_BITS
 from equiv.language.mistakes import Mistake
 
+_LARGEST_TRIED = 64
+"""The largest exponent for which a power of a fraction is tried for a rational number."""
+
 
 class Measure(NamedTuple):
-    """An exact number and its dimension; a number without one may be added to any."""
+    """An exact number and its dimension; a number without one may be added to any.
+
+    `rounded` where it stands for an irrational number.
+    """
 
     number: Fraction
     dimension: Dimension = NO_DIMENSION
+    rounded: bool = False
 
 
 class Step(NamedTuple):
@@ -38,11 +45,11 @@ def within_bounds(measure: Measure, step: Step) -> Measure:
 
 def _sum(first: Measure, second: Measure, step: Step) -> Measure:
     sign = 1 if step.what == "+" else -1
-    number = first.number + sign * second.number
+    number, rounded = first.number + sign * second.number, first.rounded or second.rounded
     if first.dimension == second.dimension or second.dimension == NO_DIMENSION:
-        return Measure(number, first.dimension)
+        return Measure(number, first.dimension, rounded)
     if first.dimension == NO_DIMENSION:
-        return Measure(number, second.dimension)
+        return Measure(number, second.dimension, rounded)
     word = "add" if sign > 0 else "subtract"
     raise Mistake(
         "wrong-dimension",
@@ -53,14 +60,14 @@ def _sum(first: Measure, second: Measure, step: Step) -> Measure:
 
 def _product(first: Measure, second: Measure, step: Step) -> Measure:
     dimension = tuple(a + b for a, b in zip(first.dimension, second.dimension, strict=True))
-    return Measure(first.number * second.number, dimension)
+    return Measure(first.number * second.number, dimension, first.rounded or second.rounded)
 
 
 def _quotient(first: Measure, second: Measure, step: Step) -> Measure:
     if second.number == 0:
         raise Mistake("division-by-zero", "the divisor is zero", step.place)
     dimension = tuple(a - b for a, b in zip(first.dimension, second.dimension, strict=True))
-    return Measure(first.number / second.number, dimension)
+    return Measure(first.number / second.number, dimension, first.rounded or second.rounded)
 
 
 def _power(base: Measure, exponent: Measure, step: Step) -> Measure:
@@ -74,14 +81,18 @@ def _power(base: Measure, exponent: Measure, step: Step) -> Measure:
         return _root(base, step)
     if exponent.number.denominator != 1:
         _require_no_dimension(base, step)
-        return Measure(_computed(lambda: functions.power(base.number, exponent.number), step))
+        result = _computed(lambda: functions.power(base.number, exponent.number), step)
+        p, q = exponent.number.numerator, exponent.number.denominator
+        same = base.number**p == result**q if max(abs(p), q) <= _LARGEST_TRIED else False
+        return Measure(result, rounded=base.rounded or exponent.rounded or not same)
     n = exponent.number.numerator
     bits = max(base.number.numerator.bit_length(), base.number.denominator.bit_length()) - 1
     if bits * abs(n) > MOST_BITS or abs(n) > MOST_BITS:
         raise Mistake("number-too-large", "the power has too many digits", step.place)
     if base.number == 0 and n < 0:
         raise Mistake("division-by-zero", "zero has no negative power", step.place)
-    return Measure(base.number**n, tuple(a * n for a in base.dimension))
+    rounded = base.rounded or exponent.rounded
+    return Measure(base.number**n, tuple(a * n for a in base.dimension), rounded)
 
 
 BINARY: dict[str, Callable[[Measure, Measure, Step], Measure]] = {
@@ -91,11 +102,14 @@ BINARY: dict[str, Callable[[Measure, Measure, Step], Measure]] = {
 
 def one_argument(argument: Measure, step: Step) -> Measure:
     if step.what == "negate":
-        return Measure(-argument.number, argument.dimension)
+        return Measure(-argument.number, argument.dimension, argument.rounded)
     if step.what == "sqrt":
         return _root(argument, step)
     _require_no_dimension(argument, step)
-    return Measure(_computed(lambda: functions.FUNCTIONS[step.what](argument.number), step))
+    result = _computed(lambda: functions.FUNCTIONS[step.what](argument.number), step)
+    # of a rational number all four are irrational, but for exp 0, log 1, sin 0 and cos 0
+    known = argument.number == (1 if step.what == "log" else 0)
+    return Measure(result, rounded=argument.rounded or not known)
 
 
 def _root(argument: Measure, step: Step) -> Measure:
@@ -106,7 +120,8 @@ def _root(argument: Measure, step: Step) -> Measure:
             step.place,
         )
     number = _computed(lambda: functions.square_root(argument.number), step)
-    return Measure(number, tuple(a // 2 for a in argument.dimension))
+    rounded = argument.rounded or number**2 != argument.number
+    return Measure(number, tuple(a // 2 for a in argument.dimension), rounded)
 
 
 def _computed(function: Callable[[], Fraction], step: Step) -> Fraction:

@@ -48,7 +48,7 @@ def _percentage(text: str, at: int) -> Number | None:
     if not text.endswith("%"):
         return None
     if text[0] == "(" and closing(text, 0) == len(text) - 2:
-        number, _ = parse_expression(text[1:-2], at + 1).evaluate(Scope())
+        number = parse_expression(text[1:-2], at + 1).evaluate(Scope()).number
         return bounded(scale(exact(number), -2), (at, len(text)))
     found = numeral(text, at)
     return bounded(found.number, (at, len(text))) if found else None

@@ -11,7 +11,7 @@ from equiv.language.dimensions import dimension_of
 from equiv.language.mistakes import AlreadyReported, Mistake
 from equiv.language.operations import Measure
 from equiv.language.words import Statement
-from equiv.units import Formula, Ratio, Value
+from equiv.units import Formula, Ratio, Rounded, Value, as_rounded
 
 
 class Parameter(NamedTuple):
@@ -84,12 +84,14 @@ class Scope:
         if isinstance(value, Formula):
             value = value.value
         if isinstance(value, Ratio):
+            rounded = isinstance(value.first, Rounded) or isinstance(value.second, Rounded)
             value = Fraction(value.first) / Fraction(value.second)
+            value = as_rounded(value) if rounded else value
         if not isinstance(value, Decimal | Fraction):
             raise Mistake(
                 "needs-real", f"{name} is complex; expressions are of real numbers", place
             )
-        return Measure(Fraction(value), dimension_of(unit))
+        return Measure(Fraction(value), dimension_of(unit), isinstance(value, Rounded))
 
     def settle(self, report: Report) -> None:
         """Evaluate every definition, in whatever order they need each other."""

@@ -28,7 +28,7 @@ SCOPE.known.update(
 
 def comes_to(text: str) -> tuple[Fraction, str]:
     """Number and unit of an expression."""
-    number, dimension = parse_expression(text, 0).evaluate(SCOPE)
+    number, dimension, _ = parse_expression(text, 0).evaluate(SCOPE)
     return number, unit_of(dimension)
 
 
