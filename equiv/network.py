@@ -87,11 +87,13 @@ class Network:
     places: tuple[tuple[str, int], ...] = ()
     """File and line of each element, in the order of `elements`; empty if not from text."""
     origin: Origin = NOWHERE
+    arithmetic: str = "floating"
+    """`floating`, `exact`, or `nearest`: rational, irrational numbers by their floats."""
     again: Again | None = field(default=None, repr=False)
     """Reads it again with other values of its parameters (as text); None if not from text."""
 
     def __eq__(self, other: object) -> bool:
-        """Same elements and statements; places, origin and comments do not count."""
+        """Same elements and statements; places, origin, comments and arithmetic do not count."""
         if not isinstance(other, Network):
             return NotImplemented
         return self._content() == other._content()
@@ -104,6 +106,11 @@ class Network:
             list(self.elements.values()), self.title, self.notes, self.ground, self.frequency,
             self.phasors, dict(self.given), self.finds, dict(self.ports),
         )  # fmt: skip
+
+    @property
+    def exact(self) -> bool:
+        """Whether the numbers of its solution are rational."""
+        return self.arithmetic != "floating"
 
     @cached_property
     def nodes(self) -> tuple[str, ...]:

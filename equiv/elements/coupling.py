@@ -35,6 +35,6 @@ class Coupling(Element):
         if "M" in some.variant:
             mutual = some.parameter("M")
         else:
-            mutual = some.parameter("k") * (l1 * l2) ** 0.5
+            mutual = some.parameter("k") * some.root(l1 * l2)
         pen.add(first, Through(second, -some.s * mutual))
         pen.add(second, Through(first, -some.s * mutual))

@@ -86,6 +86,9 @@ class Column(Protocol):
     def parameter(self, name: str, index: int = 0) -> Any:
         """A named value of a kind that has several."""
 
+    def root(self, squares: Any) -> Any:
+        """The square roots of numbers, one an element."""
+
     @property
     def reference(self) -> Any:
         """The reference resistance of parameters s that files give (ohm)."""

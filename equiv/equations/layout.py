@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from collections.abc import Iterable, Sequence
 from functools import cached_property
 from itertools import compress
 from typing import Any
@@ -14,20 +13,23 @@ from numpy.typing import NDArray
 from equiv.elements import Element
 from equiv.elements.element import GROUND, Parameters
 from equiv.elements.quantity import Quantity
-from equiv.errors import Diagnostic, UsageError
+from equiv.equations.arithmetic import FLOATING, Arithmetic
+from equiv.equations.arithmetic import Numbers as Numbers
 from equiv.network import Branch, Network, NodePair
-from equiv.units import Symbol, as_number
 
 Integers = NDArray[np.int64]
-Numbers = NDArray[Any]
 Pair = tuple[Integers, Integers]
 
 
 class Layout:
-    """Numbers for the nodes and branches of a network. The ground is node -1."""
+    """Numbers for the nodes and branches of a network. The ground is node -1.
 
-    def __init__(self, network: Network) -> None:
+    The values are in the arithmetic that is given, else in the one that the network asks for.
+    """
+
+    def __init__(self, network: Network, arithmetic: Arithmetic | None = None) -> None:
         self.network = network
+        self.arithmetic = arithmetic or arithmetic_of(network)
         self.elements: list[Element] = list(network.elements.values())
         self.node_number: dict[str, int] = {name: i for i, name in enumerate(network.nodes)}
         self.node_number[network.ground] = GROUND
@@ -107,24 +109,13 @@ class Layout:
         return self.branch_of(place)
 
 
-def floats(values: Iterable[Any], elements: Sequence[Element]) -> Numbers:
-    """Exact values as floats, or as complex numbers where one of them is complex."""
-    values = list(values)
-    try:
-        return np.fromiter(map(float, values), float, len(values))
-    except TypeError:
-        for value, element in zip(values, elements, strict=True):
-            if isinstance(value, Symbol):
-                raise UsageError(_needs_value(element)) from None
-        return np.array([as_number(value) for value in values])
+def arithmetic_of(network: Network) -> Arithmetic:
+    """The arithmetic that a network asks for."""
+    if network.exact:
+        from equiv.equations.exact.arithmetic import EXACT, NEAREST
 
-
-def _needs_value(element: Element) -> Diagnostic:
-    return Diagnostic(
-        "no-value",
-        f"{element.name} is written with `?` and has no number",
-        hint=f"give {element.kind} {element.name} a value: this result is numeric",
-    )
+        return NEAREST if network.arithmetic == "nearest" else EXACT
+    return FLOATING
 
 
 class ElementColumn:
@@ -152,7 +143,7 @@ class ElementColumn:
     @cached_property
     def value(self) -> Numbers:
         """The values, in the kind's SI unit."""
-        return floats([e[2] for e in self.elements], self.elements)
+        return self.layout.arithmetic.column([e[2] for e in self.elements], self.elements)
 
     def parameter(self, name: str, index: int = 0) -> Numbers:
         """A named value of kinds that have several."""
@@ -160,7 +151,11 @@ class ElementColumn:
         for element in self.elements:
             assert isinstance(element.value, Parameters)
             values.append(element.value[name][index])
-        return floats(values, self.elements)
+        return self.layout.arithmetic.column(values, self.elements)
+
+    def root(self, squares: Numbers) -> Numbers:
+        """The square roots of numbers, one an element."""
+        return self.layout.arithmetic.root(squares, self.elements)
 
     @property
     def source(self) -> Integers:
@@ -184,7 +179,8 @@ class ElementColumn:
     @property
     def reference(self) -> Numbers:
         """The reference resistance of parameters s that files give (ohm)."""
-        return np.array([e.table.reference for e in self.elements if e.table])
+        references = [e.table.reference for e in self.elements if e.table]
+        return self.layout.arithmetic.rounded(references, self.elements)
 
     def entry(self, row: int, column: int) -> Numbers:
         """A parameter that files give at some frequencies, at this one."""
@@ -196,13 +192,15 @@ class ElementColumn:
             known = {key: table.at(hertz) for key, table in tables.items()}
             self._tabulated = hertz, [known[id(e.table)] for e in self.elements]
         ports = int(self.variant[-1])
-        return np.array([matrix[row * ports + column] for matrix in self._tabulated[1]])
+        entries = [matrix[row * ports + column] for matrix in self._tabulated[1]]
+        return self.layout.arithmetic.rounded(entries, self.elements)
 
     def linked(self, number: int) -> tuple[Integers, Numbers]:
         """Branches and values of the elements that a coupling joins."""
         partners = [self.layout.network.elements[e.links[number]] for e in self.elements]
         branches = [self.layout.branch_of(Branch(p.name, 0)) for p in partners]
-        return np.array(branches, dtype=np.int64), floats([p.value for p in partners], partners)
+        values = self.layout.arithmetic.column([p.value for p in partners], partners)
+        return np.array(branches, dtype=np.int64), values
 
     def split(self, chosen: Any) -> tuple[ElementColumn, ElementColumn]:
         """The elements for which `chosen` is true, and the others."""

@@ -42,8 +42,9 @@ class System:
     def __init__(self, layout: Layout, form: str = "nodal", s: Any = 0.0) -> None:
         self.layout, self.form, self.s = layout, form, s
         self.laws = Laws(layout, form, s)
+        self.real = layout.arithmetic.dtype
         self.dtype = np.result_type(
-            float, self.laws.across.coefficient, self.laws.through.coefficient
+            self.real, self.laws.across.coefficient, self.laws.through.coefficient
         )
         has_unknown = self.laws.is_equation.copy()
         has_unknown[self.laws.through.first] = True
@@ -57,11 +58,11 @@ class System:
         laws, unknown, layout = self.laws, self.unknown, self.layout
         own = np.flatnonzero(unknown >= 0)
         given = own[~laws.is_equation[own]]
-        one = np.ones(len(own))
+        one = np.ones(len(own), self.real)
         parts = [
             (layout.tail[own], unknown[own], one),
             (layout.head[own], unknown[own], -one),
-            (unknown[given], unknown[given], np.ones(len(given))),
+            (unknown[given], unknown[given], np.ones(len(given), self.real)),
         ]
         for terms, columns in self._columns():
             for rows, sign, chosen in self._rows_of(terms):
@@ -139,7 +140,7 @@ class System:
                     return Row(sign * impedance * row.state, sign * impedance * row.source)
         return None
 
-    def _impedance(self, branch: int) -> complex | None:
+    def _impedance(self, branch: int) -> Any:
         """z of a branch whose whole law is y·v = z·y·i with some y that is not zero."""
         across, through = self.laws.across, self.laws.through
         a, t = (np.flatnonzero(terms.branch == branch) for terms in (across, through))
@@ -149,12 +150,11 @@ class System:
         own = same and across.second[a[0]] == self.layout.head[branch]
         if not own or through.first[t[0]] != branch or not across.coefficient[a[0]]:
             return None
-        z = -through.coefficient[t[0]] / across.coefficient[a[0]]
-        return complex(z) if np.iscomplexobj(z) else float(z)
+        return -through.coefficient[t[0]] / across.coefficient[a[0]]
 
     def voltage_row(self, first: int, second: int) -> Row:
         """The voltage of one node over another (-1 is the ground)."""
-        row = Row(np.zeros(self.size, self.dtype), np.zeros(self.source_count))
+        row = Row(np.zeros(self.size, self.dtype), np.zeros(self.source_count, self.real))
         if first >= 0:
             row.state[first] += 1
         if second >= 0:
@@ -163,7 +163,7 @@ class System:
 
     def current_row(self, branch: int) -> Row:
         """The current of a branch, first node to second inside it."""
-        row = Row(np.zeros(self.size + 1, self.dtype), np.zeros(self.source_count))
+        row = Row(np.zeros(self.size + 1, self.dtype), np.zeros(self.source_count, self.real))
         if self.unknown[branch] >= 0:
             row.state[self.unknown[branch]] = 1
             return Row(row.state[:-1], row.source)
@@ -174,7 +174,7 @@ class System:
                 np.add.at(row.state, column[chosen], factor * terms.coefficient[chosen])
         drive = self.laws.drive
         chosen = np.flatnonzero(drive.branch == branch)
-        np.add.at(row.source, drive.first[chosen], drive.coefficient[chosen].real)
+        np.add.at(row.source, drive.first[chosen], drive.coefficient[chosen])
         return Row(row.state[:-1], row.source)
 
     def currents(self, x: Numbers, u: Numbers) -> Numbers:
