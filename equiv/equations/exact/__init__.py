@@ -1,0 +1,1 @@
+"""Exact arithmetic: rational numbers, and complex ones with rational parts."""
