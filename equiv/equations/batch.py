@@ -17,6 +17,7 @@ from typing import NamedTuple
 import numpy as np
 
 from equiv.elements.quantity import Quantity
+from equiv.equations.arithmetic import FLOATING
 from equiv.equations.dense import balance
 from equiv.equations.factor import DENSE_UP_TO, IllConditionedError
 from equiv.equations.graph import findings
@@ -59,7 +60,7 @@ class Batch:
         # what a file gives at some frequencies is no law in s
         if any(element.table for element in network.elements.values()):
             return
-        layout = Layout(network)
+        layout = Layout(network, FLOATING)
         systems = [System(layout, form, s) for s in (0.0, 1.0, 2.0)]
         self._systems = systems
         self.size, self.source_count = systems[1].size, systems[1].source_count

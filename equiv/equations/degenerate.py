@@ -8,6 +8,8 @@ Source: G. H. Golub, C. F. Van Loan, Matrix Computations (4th ed., 2013), sectio
 
 from __future__ import annotations
 
+from typing import Protocol
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -42,6 +44,46 @@ def echelon(vectors: Numbers) -> Numbers:
 
 class OutOfRangeError(Exception):
     """The values are beyond what floating point can hold."""
+
+
+class Decomposition(Protocol):
+    """What a singular system still determines, whatever its arithmetic."""
+
+    def solve(self, right: Numbers) -> Numbers:
+        """A solution, of the part that has one."""
+
+    def solve_transposed(self, right: Numbers) -> Numbers:
+        """x of Aᵀ x = right."""
+
+    def consistent(self, u: Numbers) -> bool:
+        """Whether these sources give a solution at all."""
+
+    def reaches(self, row: Row, u: Numbers) -> bool:
+        """Whether a contradiction between these sources touches a quantity."""
+
+    def unique(self, row: Row) -> bool:
+        """Whether a quantity is the same in every solution."""
+
+    def spread(self, row: Numbers, x: Numbers) -> Numbers:
+        """What a quantity may take from the rounding of a solution."""
+
+    def spreads(self, x: Numbers) -> Numbers:
+        """The same for each unknown of one solution."""
+
+    def culprits(self) -> tuple[list[int], list[int]]:
+        """The branches that the smallest null vector names (left or right), or the free nodes."""
+
+
+def decomposed(system: System) -> Decomposition:
+    """The decomposition that suits a system's numbers.
+
+    Errors: OutOfRangeError where floating point cannot hold the values.
+    """
+    if system.layout.network.exact:
+        from equiv.equations.exact.factor import ExactDegenerate
+
+        return ExactDegenerate(system)
+    return Degenerate(system)
 
 
 class Degenerate:
@@ -121,16 +163,30 @@ class Degenerate:
 
         Free nodes: a right null vector without currents, so that nothing fixes these voltages.
         """
-        own = np.flatnonzero(self.system.unknown >= 0)
-        places = self.system.unknown[own]
-        nodes = self.system.layout.node_count
-        best: list[int] = []
-        for null in (self.right_null, self.left_null):
-            for vector in null.T:
-                large = np.abs(vector) > 1e-6 * np.abs(vector).max()
-                named = own[large[places]].tolist()
-                if not named and null is self.right_null:
-                    return [], np.flatnonzero(large[:nodes]).tolist()
-                if named and (not best or len(named) < len(best)):
-                    best = named
-        return best, []
+        return culprits_of(self.system, _large(self.right_null), _large(self.left_null))
+
+
+def _large(vectors: Numbers) -> NDArray[np.bool_]:
+    """Which entries of null vectors are more than rounding."""
+    size = np.abs(vectors)
+    return np.asarray(size > 1e-6 * size.max(axis=0, initial=0.0))
+
+
+def culprits_of(
+    system: System, right: NDArray[np.bool_], left: NDArray[np.bool_]
+) -> tuple[list[int], list[int]]:
+    """The branches that the smallest null vector names, or the free nodes.
+
+    `right` and `left` tell where the null vectors, one a column, are not zero.
+    """
+    own = np.flatnonzero(system.unknown >= 0)
+    places = system.unknown[own]
+    best: list[int] = []
+    for null in (right, left):
+        for vector in null.T:
+            named = own[vector[places]].tolist()
+            if not named and null is right:
+                return [], np.flatnonzero(vector[: system.layout.node_count]).tolist()
+            if named and (not best or len(named) < len(best)):
+                best = named
+    return best, []

@@ -32,7 +32,11 @@ class Factor(Protocol):
 
 
 def factorise(system: System) -> Factor:
-    """The factorisation that suits a system's size and form."""
+    """The factorisation that suits a system's numbers and size."""
+    if system.layout.network.exact:
+        from equiv.equations.exact.factor import ExactFactor
+
+        return ExactFactor(system)
     if system.size <= DENSE_UP_TO:
         from equiv.equations.dense import DenseFactor
 

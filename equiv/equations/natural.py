@@ -14,6 +14,7 @@ import numpy as np
 
 from equiv.elements import Element
 from equiv.elements.element import Parameters
+from equiv.equations.arithmetic import FLOATING
 from equiv.equations.dense import balance, matrix
 from equiv.equations.layout import Layout, Numbers
 from equiv.equations.system import System
@@ -42,7 +43,7 @@ def unstable_frequencies(network: Network) -> list[complex]:
         return []
     if network.tabulated:
         return []  # what a file gives is known on the imaginary axis only
-    layout = Layout(network)
+    layout = Layout(network, FLOATING)
     still = System(layout, "nodal", 0.0)
     if still.size > LARGEST or np.issubdtype(still.dtype, np.complexfloating):
         return []

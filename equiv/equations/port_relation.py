@@ -18,7 +18,6 @@ import numpy as np
 from equiv.elements.element import Frequency
 from equiv.equations.dense import balance, matrix
 from equiv.equations.layout import Layout, Numbers
-from equiv.equations.solution import complex_frequency
 from equiv.equations.system import System
 from equiv.network import Network, Port
 
@@ -44,6 +43,10 @@ class PortRelation(NamedTuple):
     @property
     def rank(self) -> int:
         """The number of independent equations; a network that is sound has one a port."""
+        if self.m.dtype == object:
+            from equiv.equations.exact.matrices import rank_of
+
+            return rank_of(np.hstack([self.m, self.n]))
         rows = np.hstack([self.m * self.volts, self.n * self.amperes])
         values = np.linalg.svd(rows, compute_uv=False)
         return int((values > RANK_LIMIT * values.max(initial=0.0)).sum())
@@ -58,11 +61,11 @@ def null_space(
     them are left out: they bind the sources alone.
     """
     layout = Layout(network)
-    system = System(layout, "branch-current", complex_frequency(frequency))
+    system = System(layout, "branch-current", layout.arithmetic.s(frequency))
     if system.size > LARGEST:
         return None
     count = len(ports)
-    into = np.zeros((system.size + 1, count))
+    into = np.zeros((system.size + 1, count), system.real)
     across = np.zeros((count, system.size), system.dtype)
     for number, port in enumerate(ports):
         plus, minus = layout.node_number[port.plus], layout.node_number[port.minus]
@@ -71,12 +74,14 @@ def null_space(
         into[minus, number] -= 1
         across[number] = system.voltage_row(plus, minus).state
     stacked = np.vstack([matrix(system), across])
+    excited = system.excitation(np.diag(u)) if len(u) else np.zeros((system.size, 0), system.dtype)
+    if network.exact:
+        return _exact_relation(stacked, into[:-1], excited)
     rows, columns = balance(stacked)
     left, values, _ = np.linalg.svd(stacked * rows[:, None] * columns)
     rank = int((values > RANK_LIMIT * values.max(initial=0.0)).sum())
     null = left[:, rank:].conj().T
     inner, outer = null[:, :-count] * rows[:-count], null[:, -count:] * rows[-count:]
-    excited = system.excitation(np.diag(u)) if len(u) else np.zeros((system.size, 0))
     relation = PortRelation(
         m=outer,
         n=inner @ into[:-1],
@@ -85,6 +90,23 @@ def null_space(
         amperes=1 / np.array([rows[:-count][into[:-1, p] != 0].max() for p in range(count)]),
     )
     return _condensed(relation)
+
+
+def _exact_relation(stacked: Numbers, into: Numbers, excited: Numbers) -> PortRelation | None:
+    """The relation in exact numbers: the reduced echelon form of M v + N j - K u = 0."""
+    from equiv.equations.exact.matrices import Matrix, null_space
+
+    count = into.shape[1]
+    null = null_space(stacked.T).T
+    inner, outer = null[:, :-count], null[:, -count:]
+    rows, pivots = Matrix(np.hstack([outer, inner @ into, inner @ excited])).reduced()
+    of_ports = np.array(pivots, int) < 2 * count
+    # what binds the sources alone must hold for them as they are
+    if (rows[~of_ports].sum(axis=1) != 0).any():
+        return None
+    m, n, k = np.split(rows[of_ports], [count, 2 * count], axis=1)
+    unit = np.ones(count)
+    return PortRelation(m, n, -k, unit, unit)
 
 
 def _condensed(relation: PortRelation) -> PortRelation | None:

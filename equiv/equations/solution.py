@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Callable
 from functools import cached_property
 from typing import TypeVar
@@ -12,30 +11,23 @@ import numpy as np
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
 from equiv.equations import words
-from equiv.equations.degenerate import LARGEST, Degenerate, OutOfRangeError
+from equiv.equations.degenerate import (
+    LARGEST,
+    Decomposition,
+    OutOfRangeError,
+    decomposed,
+)
 from equiv.equations.dense import DenseFactor
 from equiv.equations.factor import Factor, IllConditionedError, factorise
 from equiv.equations.graph import findings
-from equiv.equations.layout import Layout, Numbers, floats
+from equiv.equations.layout import Layout, Numbers
+from equiv.equations.scalars import like, scalar
+from equiv.equations.sources import source_values as source_values
 from equiv.equations.system import Row, System
 from equiv.errors import Diagnostic, NoUniqueSolutionError
 from equiv.network import Network
 
 T = TypeVar("T")
-
-
-def complex_frequency(frequency: Frequency) -> float | complex:
-    """s of the sinusoidal steady state: 0 at DC, so that DC stays in real numbers."""
-    return 1j * frequency.omega if frequency.omega else 0.0
-
-
-def source_values(network: Network, frequency: Frequency) -> Numbers:
-    """The rms value (V or A) of each source at a frequency; 0 for a source at another one."""
-    values = floats([source.value for source in network.sources], network.sources)
-    at = [network.frequency_of(source).omega for source in network.sources]
-    here = [math.isclose(omega, frequency.omega, rel_tol=1e-12) for omega in at]
-    peak = math.sqrt(2) if network.phasors == "peak" and frequency.omega else 1.0
-    return np.where(here, values / peak, 0.0)
 
 
 class State:
@@ -57,7 +49,7 @@ class State:
     def of(self, quantity: Quantity) -> complex:
         """A voltage or current of this solution."""
         row = self.system.row(quantity)
-        return complex(row.state @ self.x + row.source @ self.u)
+        return scalar(row.state @ self.x + row.source @ self.u)
 
     def largest(self, what: str) -> float:
         """The largest voltage (V) or current (A) of any branch."""
@@ -88,11 +80,11 @@ class Solver:
     def __init__(self, network: Network, frequency: Frequency, form: str = "nodal") -> None:
         self.network, self.frequency, self.form = network, frequency, form
         self.layout = Layout(network)
-        self.s = complex_frequency(frequency)
+        self.s = self.layout.arithmetic.s(frequency)
         self.u = source_values(network, frequency)
         self.system = System(self.layout, form, self.s)
         self.took_over = False
-        self.degenerate: Degenerate | None = None
+        self.degenerate: Decomposition | None = None
         self.reasons: tuple[str, ...] = ()
         self._absolute_inverse: Numbers | None = None
         found = findings(self.system.laws)
@@ -106,7 +98,13 @@ class Solver:
             self._take_over()
 
     def _take_over(self) -> None:
-        """From the nodal form to the branch-current form; from there to the singular case."""
+        """From the nodal form to the branch-current form; from there to the singular case.
+
+        What is exact loses no digits, so that its nodal form is singular only with the other.
+        """
+        if self.network.exact:
+            self._decompose()
+            return
         self.took_over, self.form = True, "branch-current"
         self.system = System(self.layout, self.form, self.s)
         try:
@@ -126,7 +124,7 @@ class Solver:
         if self.system.size > LARGEST:
             raise NoUniqueSolutionError(self._complaints())
         try:
-            self.degenerate = Degenerate(self.system)
+            self.degenerate = decomposed(self.system)
         except OutOfRangeError:
             raise NoUniqueSolutionError(_OUT_OF_RANGE) from None
         self._factor = self.degenerate
@@ -142,7 +140,7 @@ class Solver:
     def _solved(self, how: str, right: Numbers) -> Numbers:
         try:
             solution: Numbers = getattr(self._factor, how)(right)
-            if not np.isfinite(solution).all():
+            if not self.network.exact and not np.isfinite(solution).all():
                 raise NoUniqueSolutionError(_OUT_OF_RANGE)
             return solution
         except IllConditionedError:
@@ -193,20 +191,23 @@ class Solver:
 
         def work() -> Numbers:
             row = self.row(quantity)
-            return self.system.gather(row, self._solved("solve_transposed", row.state))
+            adjoint = self._solved("solve_transposed", row.state)
+            return like(self.network, self.system.gather(row, adjoint))
 
         return self._retry(work)
 
     def state(self, u: Numbers | None = None) -> State:
         """The solution for given values of the sources (all of them on, if none are given).
 
-        In the branch-current form of a small network what is only rounding is made zero.
+        In the branch-current form of a small network what is only rounding is made zero; what is
+        exact has no rounding.
         """
         values = self.u if u is None else u
 
         def work() -> State:
             x = self._solved("solve", self.system.excitation(values))
-            if self.form == "branch-current" and self.system.size <= CLEANED_UP_TO:
+            rounds = self.form == "branch-current" and not self.network.exact
+            if rounds and self.system.size <= CLEANED_UP_TO:
                 x = self._cleaned(x, values)
             return State(self.system, x, values)
 
@@ -230,15 +231,18 @@ class Solver:
             x = self._solved("solve", self.system.excitation(columns))
             return np.asarray(row.state @ x + row.source @ columns)
 
-        return [complex(value) for value in self._retry(work)]
+        return [scalar(value) for value in self._retry(work)]
 
     def rounding(self, quantity: Quantity, columns: Numbers) -> Numbers:
         """What rounding alone can make of a quantity, for each column of source values.
 
         |λ|ᵀ(|A||x| + |B||u|) times a few units of the last digit, λ the adjoint solution: the
         forward bound of a solution that is backward stable row by row (N. J. Higham, Accuracy
-        and Stability of Numerical Algorithms, 2nd ed., 2002, section 7.2).
+        and Stability of Numerical Algorithms, 2nd ed., 2002, section 7.2). Nothing, where
+        numbers are exact.
         """
+        if self.network.exact:
+            return np.zeros(columns.shape[1])
 
         def work() -> Numbers:
             row = self.row(quantity)
