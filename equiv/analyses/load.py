@@ -9,14 +9,16 @@ from typing import Any, ClassVar
 
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
+from equiv.analyses.exactness import exactly
 from equiv.analyses.headings import frequency_words
+from equiv.analyses.loading.exact_loads import exact_loads
 from equiv.analyses.loading.points import Line, Point, points
 from equiv.analyses.loading.proof import prove, same, why_none
 from equiv.analyses.loading.state import LoadState, LoadTotal, PortLoads, largest, total
 from equiv.analyses.loading.tables import load_data, load_tables, total_data, total_table
 from equiv.analyses.port import equivalent, find_port
 from equiv.analyses.result import Caution, Check, Result
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT
+from equiv.analyses.superposition.terms import limit_of
 from equiv.analyses.tables import Table
 from equiv.elements.element import Frequency
 from equiv.errors import Diagnostic, ExitStatus, UsageError
@@ -67,7 +69,11 @@ class LoadedPort(Result):
 
 
 def load(
-    network: Network, port: str | Port, *values: str | Load, progress: Progress = no_progress
+    network: Network,
+    port: str | Port,
+    *values: str | Load,
+    exact: bool = False,
+    progress: Progress = no_progress,
 ) -> LoadedPort:
     """What a port does under given loads: voltage, current, power, regulation, efficiency.
 
@@ -75,14 +81,17 @@ def load(
     point is proved by the original network with the load on it. It is `equiv.load_port`.
 
     Arguments: the port by its name or as `a,b`; loads in words (`8 ohm`, `4+3j ohm`, `short`,
-    `open`, `current 2 A`, `power 50 W`, `power 50 W pf 0.8 lag`), or of `equiv.load_curve`.
-    Errors: UsageError for an unknown port or a load that cannot be read. A load that has no
+    `open`, `current 2 A`, `power 50 W`, `power 50 W pf 0.8 lag`), or of `equiv.load_curve`;
+    `exact` for rational arithmetic (of impedances and currents).
+    Errors: UsageError for an unknown port, for a load that cannot be read, or that an exact result
+    cannot take. A load that has no
     point is a row that says why; the exit status is 5 where none has any.
     Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load.
     Source: L. Thevenin, 1883; regulation and efficiency: common practice.
     """
     at = port if isinstance(port, Port) else find_port(network, port)
-    loads = _loads(values)
+    network = exactly(network, exact)
+    loads = exact_loads(network, _loads(values))
     found = []
     for number, frequency in enumerate(network.frequencies):
         progress("loads", number, len(network.frequencies))
@@ -95,7 +104,7 @@ def load(
     totals = _totals(found, loads) if len(found) > 1 else ()
     return LoadedPort(
         network,
-        checks=tuple(check for f in found for check in _checks(f)),
+        checks=tuple(check for f in found for check in _checks(network, f)),
         cautions=tuple(dict.fromkeys([*about_network(network), *_cautions(at, found)])),
         refusal=ExitStatus.DOES_NOT_EXIST if nothing else ExitStatus.DONE,
         port=at,
@@ -181,17 +190,17 @@ def _totals(found: Sequence[PortLoads], loads: Sequence[Load]) -> tuple[LoadTota
     )
 
 
-def _checks(found: PortLoads) -> list[Check]:
+def _checks(network: Network, found: PortLoads) -> list[Check]:
     where = f" at {frequency_words(found.frequency, '')}" if found.frequency.omega else ""
     checks = []
     for state in found.states:
         if state.proof is not None:
             name = f"equivalent against the network with {state.named}{where}"
-            checks.append(Check(name, state.proof.difference, CLOSURE_LIMIT))
+            checks.append(Check(name, state.proof.difference, limit_of(network)))
     worst = [s.proof.balance for s in found.states if s.proof is not None]
     if worst:
         name = f"power balance, loaded{where}"
-        checks.append(Check(name, largest(worst), CLOSURE_LIMIT, shared=True))
+        checks.append(Check(name, largest(worst), limit_of(network), shared=True))
     return checks
 
 

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from typing import Any, ClassVar, NamedTuple
 
 from equiv.analyses.tables import Table
+from equiv.equations.scalars import is_exact
 from equiv.errors import ExitStatus
 from equiv.network import Network
 
@@ -27,7 +28,8 @@ class Check(NamedTuple):
         verdict = "passed" if self.passed else "FAILED"
         name = self.name[0].upper() + self.name[1:]
         value = f"{self.value:.1e}" if self.value else "0"
-        return f"{name}: {value} (limit {self.limit:.0e}): {verdict}"
+        limit = f"{self.limit:.0e}" if self.limit else "0"
+        return f"{name}: {value} (limit {limit}): {verdict}"
 
     @property
     def passed(self) -> bool:
@@ -122,8 +124,12 @@ def finite(value: float) -> float | None:
     return value if -1e308 < value < 1e308 else None
 
 
-def pair(value: complex | None) -> dict[str, float] | None:
-    """A complex number for JSON: always both parts; None where it does not exist."""
+def pair(value: complex | None) -> dict[str, Any] | None:
+    """A complex number for JSON: always both parts; None where it does not exist.
+
+    An exact one has its text too: `60/11`, or both parts where it is complex.
+    """
     if value is None or finite(value.real) is None or finite(value.imag) is None:
         return None
-    return {"re": float(value.real) + 0.0, "im": float(value.imag) + 0.0}
+    exact = {"exact": value.exact} if is_exact(value) else {}  # type: ignore[attr-defined]
+    return {"re": float(value.real) + 0.0, "im": float(value.imag) + 0.0, **exact}

@@ -7,12 +7,14 @@ from typing import Any, ClassVar, NamedTuple
 
 from equiv.analyses.cautions import about_network, about_solver
 from equiv.analyses.closing import closing_table
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes, exactly
 from equiv.analyses.headings import at_words, frequency_words
 from equiv.analyses.result import Caution, Check, Result, finite, pair
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT
+from equiv.analyses.superposition.terms import limit_of
 from equiv.analyses.tables import Cell, Column, Row, Table
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
+from equiv.equations.scalars import scalar
 from equiv.equations.solution import CLEANED_UP_TO, Solver, State, all_on
 from equiv.errors import Diagnostic, ExitStatus, NoUniqueSolutionError
 from equiv.network import Network, Progress, no_progress
@@ -66,15 +68,18 @@ class Solution(Result):
         return data
 
 
-def solve(network: Network, progress: Progress = no_progress) -> Solution:
+def solve(network: Network, progress: Progress = no_progress, *, exact: bool = False) -> Solution:
     """Every voltage, current and power of a network, all sources on.
 
-    A x = B u, once for each frequency of the sources; power is V·I*, absorbed.
+    A x = B u, once for each frequency of the sources; power is V·I*, absorbed. With `exact` in
+    rational arithmetic.
 
-    Errors: NoUniqueSolutionError where all the sources together have no solution.
+    Errors: NoUniqueSolutionError where all the sources together have no solution; UsageError where
+    an exact result would need an irrational value.
     Sign convention: an element's voltage is first node over second, its current first to second.
     Source: C. W. Ho, A. E. Ruehli, P. A. Brennan (1975).
     """
+    network = exactly(network, exact)
     states: list[FrequencyState] = []
     checks: list[Check] = []
     cautions: list[Caution] = about_network(network)
@@ -91,7 +96,8 @@ def solve(network: Network, progress: Progress = no_progress) -> Solution:
         if solver.degenerate is not None:
             refusal = ExitStatus.NO_UNIQUE_SOLUTION
         states.append(found)
-        checks.append(Check(f"power balance{at_words(frequency)}", found.balance, CLOSURE_LIMIT))
+        name = f"power balance{at_words(frequency)}"
+        checks.append(Check(name, found.balance, limit_of(network)))
         cautions += about_solver(solver)
     return Solution(
         network,
@@ -110,14 +116,14 @@ def _form(network: Network) -> str:
 
 def _frequency_state(solver: Solver, state: State) -> FrequencyState:
     nodes = solver.network.nodes
-    voltages = [complex(v) for v in state.x[: len(nodes)]]
+    voltages = [scalar(v) for v in state.x[: len(nodes)]]
     known = [solver.unique(Quantity("V", (n, solver.network.ground))) for n in nodes]
     elements = []
     for position, element in enumerate(solver.layout.elements):
         for index in range(len(element.pairs)):
             branch = int(solver.layout.first_branch[position]) + index
-            v: complex | None = complex(state.voltages[branch])
-            i: complex | None = complex(state.currents[branch])
+            v: complex | None = scalar(state.voltages[branch])
+            i: complex | None = scalar(state.currents[branch])
             if not solver.unique(Quantity("V", element.pair_nodes(index, solver.network.ground))):
                 v = None
             if not solver.unique(Quantity("I", (element.name,), index)):
@@ -129,21 +135,35 @@ def _frequency_state(solver: Solver, state: State) -> FrequencyState:
 
 
 def _cell(value: complex | None, dc: bool) -> Cell:
-    return None if value is None else value.real if dc else value
+    return None if value is None else value.real if dc else complex(value)
 
 
 def _tables(network: Network, f: FrequencyState) -> list[Table]:
+    return [_node_table(network, f), _element_table(network, f)]
+
+
+def _node_table(network: Network, f: FrequencyState) -> Table:
     dc = not f.frequency.omega
-    subtitles = (frequency_words(f.frequency),)
-    nodes = tuple(Row((name, _cell(v, dc))) for name, v in f.nodes)
-    node_table = Table(
+    rows = tuple(Row((name, _cell(v, dc), *exact_cells(network, v))) for name, v in f.nodes)
+    columns = (
+        Column("node", key=True),
+        Column("voltage", "V", family="voltage"),
+        *exact_columns(network, ("exact", "V")),
+    )
+    return Table(
         network.title or "Solution",
-        (f"Node voltages over {network.ground}", *subtitles),
-        (Column("node", key=True), Column("voltage", "V", family="voltage")),
-        nodes,
+        (f"Node voltages over {network.ground}", frequency_words(f.frequency)),
+        columns,
+        rows,
+        tuple(exact_notes(rows)),
         name=f"nodes{at_words(f.frequency)}",
     )
-    columns = [
+
+
+def _element_table(network: Network, f: FrequencyState) -> Table:
+    dc = not f.frequency.omega
+    units = (("exact voltage", "V"), ("exact current", "A"), ("exact power", "W" if dc else "VA"))
+    columns = (
         Column("element", key=True),
         *([Column("kind")] if dc else []),
         Column("voltage", "V"),
@@ -151,28 +171,31 @@ def _tables(network: Network, f: FrequencyState) -> list[Table]:
         Column("power absorbed", "W", family="power"),
         *([] if dc else [Column("reactive power", "var", family="power")]),
         Column("role"),
-    ]
-    rows = []
-    for e in f.elements:
-        reactive = [] if dc else [None if e.power is None else e.power.imag]
-        real = None if e.power is None else e.power.real
-        name = f"{e.name} (pair {e.pair + 1})" if e.pair else e.name
-        rows.append(
-            Row(
-                (
-                    name,
-                    *([e.kind] if dc else []),
-                    _cell(e.voltage, dc),
-                    _cell(e.current, dc),
-                    real,
-                    *reactive,
-                    _role(e),
-                )
-            )
-        )
+        *exact_columns(network, *units),
+    )
+    rows = tuple(Row(_element_cells(network, e, dc)) for e in f.elements)
     note = "Voltage: first node over second. Current: first node to second inside the element."
-    return [node_table, Table("Elements", subtitles, tuple(columns), tuple(rows), (note,),
-                              name=f"elements{at_words(f.frequency)}")]  # fmt: skip
+    return Table(
+        "Elements",
+        (frequency_words(f.frequency),),
+        columns,
+        rows,
+        (note, *exact_notes(rows)),
+        name=f"elements{at_words(f.frequency)}",
+    )
+
+
+def _element_cells(network: Network, e: ElementState, dc: bool) -> tuple[Cell, ...]:
+    return (
+        f"{e.name} (pair {e.pair + 1})" if e.pair else e.name,
+        *([e.kind] if dc else []),
+        _cell(e.voltage, dc),
+        _cell(e.current, dc),
+        None if e.power is None else e.power.real,
+        *([] if dc else [None if e.power is None else e.power.imag]),
+        _role(e),
+        *exact_cells(network, e.voltage, e.current, e.power),
+    )
 
 
 def _role(e: ElementState) -> str:

@@ -7,6 +7,7 @@ from typing import Any, NamedTuple
 
 from equiv.analyses.ports.proof import Equivalent
 from equiv.elements.element import Frequency
+from equiv.equations.scalars import is_exact, scalar
 from equiv.language.loads import Load
 from equiv.units import say
 
@@ -55,7 +56,7 @@ class Line(NamedTuple):
         def number(value: Any) -> Numeral | None:
             if value is None:
                 return None
-            return complex(value) if e.frequency.omega else complex(value).real
+            return scalar(value) if e.frequency.omega or is_exact(value) else scalar(value).real
 
         return cls(
             e.frequency,
@@ -82,7 +83,7 @@ def points(line: Line, load: Load) -> Found:
         return Found(words=f"none: the port has no equivalent: {line.no_thevenin}")
     if line.dc and load.value.imag:
         return Found(words="none: at DC a load is a real number")
-    value = load.value.real if line.dc else load.value
+    value = load.value.real if line.dc and not is_exact(load.value) else load.value
     if load.kind == "impedance":
         return _impedance(line, value) if value else _short(line)
     if load.kind == "short":
@@ -104,15 +105,20 @@ def _impedance(line: Line, load: Numeral) -> Found:
     if line.voc is None or line.z is None:
         assert line.isc is not None and line.y is not None
         whole = 1 + line.y * load
-        if abs(whole) <= _ZERO * max(1.0, abs(line.y * load)):
+        if _vanishes(whole, max(1.0, abs(line.y * load))):
             return _cancelling(line.isc)
         voltage = line.isc * load / whole
         return Found((Point(voltage, line.isc / whole),))
     whole = line.z + load
-    if abs(whole) <= _ZERO * max(abs(line.z), abs(load)):
+    if _vanishes(whole, max(abs(line.z), abs(load))):
         return _cancelling(line.voc)
     current = line.voc / whole
     return Found((Point(load * current, current),))
+
+
+def _vanishes(total: Numeral, size: float) -> bool:
+    """Whether a sum is nothing, as far as rounding goes."""
+    return not total if is_exact(total) else abs(total) <= _ZERO * size
 
 
 def _cancelling(drive: Numeral) -> Found:
@@ -137,7 +143,7 @@ def _current(line: Line, current: Numeral) -> Found:
         return Found((Point(line.voc - line.z * current, current),))
     assert line.isc is not None
     given = say(line.isc, "A")
-    if abs(line.isc - current) <= _ZERO * abs(line.isc):
+    if _vanishes(line.isc - current, abs(line.isc)):
         return _none(f"the port gives {given} at any voltage, so that no voltage is determined")
     return _none(f"the port gives {given} whatever its voltage")
 

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from decimal import Decimal
 from typing import NamedTuple
 
 import numpy as np
@@ -11,11 +10,12 @@ from equiv.analyses.loading.points import Line, Point
 from equiv.elements import KINDS, Element
 from equiv.elements.element import Frequency, Options
 from equiv.elements.quantity import Quantity
+from equiv.equations.scalars import is_exact, scalar, written
 from equiv.equations.solution import Solver, State
 from equiv.errors import EquivError
 from equiv.language.loads import Load
 from equiv.network import Network, Port
-from equiv.units import Rectangular, Value
+from equiv.units import Value
 
 _NOISE = 1e-12
 _FLOOR = 1e-6
@@ -104,10 +104,10 @@ def _element(network: Network, port: Port, line: Line, load: Load, point: Point)
     if load.kind == "impedance":
         return _impedance(name, nodes, load.value)
     if line.voc is None:
-        return _impedance(name, nodes, complex(point.voltage / point.current))
+        return _impedance(name, nodes, scalar(point.voltage / point.current))
     # a `peak` file would take the value for a peak
     scale = 2**0.5 if network.phasors == "peak" and line.frequency.omega else 1.0
-    value = complex(point.current) * scale
+    value = scalar(point.current) * scale
     return KINDS["current"](name, nodes, _value(value), options=Options(at=line.frequency))
 
 
@@ -116,9 +116,7 @@ def _impedance(name: str, nodes: tuple[str, str], value: complex) -> Element:
 
 
 def _value(value: complex) -> Value:
-    return (
-        Rectangular(Decimal(value.real), Decimal(value.imag)) if value.imag else Decimal(value.real)
-    )
+    return written(value if value.imag or is_exact(value) else value.real)
 
 
 def _sources(network: Network, solver: Solver, state: State) -> tuple[SourceState, ...]:
@@ -131,8 +129,8 @@ def _sources(network: Network, solver: Solver, state: State) -> tuple[SourceStat
             continue
         first = int(solver.layout.first_branch[position])
         branches = range(first, first + len(element.pairs))
-        delivered = -complex(powers[list(branches)].sum())
-        if abs(delivered) <= _DUST * size:
+        delivered = -scalar(powers[list(branches)].sum())
+        if abs(delivered) <= _DUST * size and not is_exact(delivered):
             delivered = 0j
         role = _ROLES.get(element.role, "controlled" if element.kind == "opamp" else "")
         if not role and delivered.real > _NOISE * size and _may_be_active(element):
@@ -143,7 +141,7 @@ def _sources(network: Network, solver: Solver, state: State) -> tuple[SourceStat
         found.append(
             SourceState(
                 element.name, element.kind, role,
-                complex(state.voltages[first]) if voltage else None,
+                scalar(state.voltages[first]) if voltage else None,
                 delivered if known else None,
             )
         )  # fmt: skip

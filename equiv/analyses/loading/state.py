@@ -10,6 +10,7 @@ from typing import NamedTuple
 from equiv.analyses.loading.points import Line, Point
 from equiv.analyses.loading.proof import Proof, SourceState
 from equiv.elements.element import Frequency
+from equiv.equations.scalars import scalar
 from equiv.language.loads import Load
 
 
@@ -57,7 +58,7 @@ class LoadState:
         """The complex power taken by the load (VA): v·i*."""
         if self.point is None:
             return None
-        return complex(self.point.voltage) * complex(self.point.current).conjugate()
+        return scalar(self.point.voltage) * scalar(self.point.current).conjugate()
 
     @property
     def efficiency(self) -> Efficiency:

@@ -4,13 +4,15 @@ from __future__ import annotations
 
 from typing import Any
 
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes
 from equiv.analyses.headings import frequency_words
 from equiv.analyses.loading.points import leans, power_factor, reactive
 from equiv.analyses.loading.proof import SourceState
 from equiv.analyses.loading.state import LoadState, LoadTotal, PortLoads, largest
 from equiv.analyses.result import Check, finite, pair
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT
+from equiv.analyses.superposition.terms import limit_of
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
+from equiv.equations.scalars import is_exact, scalar
 from equiv.network import Network, Port
 
 EFFICIENCY = (
@@ -52,9 +54,13 @@ def _loads_table(network: Network, port: Port, found: PortLoads, with_notes: boo
         Column("voltage in the network", "V", family="voltage"),
         Column("difference", exponent=True),
         *((Column("solution"),) if words else ()),
+        *exact_columns(
+            network, ("exact voltage", "V"), ("exact current", "A"), ("exact power", _watts(dc))
+        ),
     )
     rows = [
-        Row((*_row(state, dc), *((state.solution,) if words else ()))) for state in found.states
+        Row((*_row(state, dc), *((state.solution,) if words else ()), *_exact(network, state)))
+        for state in found.states
     ]
     subtitles = (
         f"Port {port.name}: voltage of {port.plus} over {port.minus}, "
@@ -62,8 +68,23 @@ def _loads_table(network: Network, port: Port, found: PortLoads, with_notes: boo
         frequency_words(found.frequency),
     )
     title = network.title or "Loads at a port"
-    notes = (*_largest(found), *(_definitions(found) if with_notes else ()), *_notes(found))
+    notes = (
+        *_largest(network, found),
+        *(_definitions(found) if with_notes else ()),
+        *_notes(found),
+        *exact_notes(rows),
+    )
     return Table(title, subtitles, columns, tuple(rows), notes, name=f"loads{_where(found)}")
+
+
+def _watts(dc: bool) -> str:
+    return "W" if dc else "VA"
+
+
+def _exact(network: Network, state: LoadState) -> list[Cell]:
+    point = state.point
+    v, i = (None, None) if point is None else (point.voltage, point.current)
+    return exact_cells(network, v, i, state.power)
 
 
 def _where(found: PortLoads) -> str:
@@ -99,12 +120,12 @@ def _row(state: LoadState, dc: bool) -> tuple[Cell, ...]:
     )
 
 
-def _largest(found: PortLoads) -> list[str]:
+def _largest(network: Network, found: PortLoads) -> list[str]:
     """The checks of the table in one line."""
     differences = [s.proof.difference for s in found.states if s.proof is not None]
     if not differences:
         return []
-    return [Check("largest difference", largest(differences), CLOSURE_LIMIT).sentence()]
+    return [Check("largest difference", largest(differences), limit_of(network)).sentence()]
 
 
 def _definitions(found: PortLoads) -> list[str]:
@@ -231,10 +252,11 @@ def _state_data(state: LoadState) -> dict[str, Any]:
         "solution": state.solution if exists and state.solution else None,
         "reason": None if exists else state.words,
         "largest_power": None if state.most is None else finite(state.most),
-        "voltage": pair(None if state.point is None else complex(state.point.voltage)),
-        "current": pair(None if state.point is None else complex(state.point.current)),
+        "voltage": pair(None if state.point is None else scalar(state.point.voltage)),
+        "current": pair(None if state.point is None else scalar(state.point.current)),
         "power": None if power is None else finite(power.real),
         "reactive_power": None if power is None else finite(reactive(power)),
+        **({"power_exact": power.exact} if is_exact(power) else {}),  # type: ignore[union-attr]
         "power_factor": None if power is None else power_factor(power),
         "current_phase": None if power is None else leans(power) or None,
         "regulation": None if state.regulation is None else finite(state.regulation),

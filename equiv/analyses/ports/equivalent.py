@@ -11,6 +11,7 @@ from equiv.analyses.ports.tests import Seen, seen
 from equiv.analyses.superposition.subcircuits import Plan
 from equiv.elements.element import Frequency
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar
 from equiv.equations.solution import source_values
 from equiv.network import Network, Port
 
@@ -93,4 +94,4 @@ def _value(network: Network, plan: Plan, u: Numbers) -> tuple[complex, str] | No
     """The value of a source and what it imposes; None for a group."""
     if plan.members != (plan.name,):
         return None
-    return complex(u[plan.numbers[0]]), network.sources[plan.numbers[0]].output
+    return scalar(u[plan.numbers[0]]), network.sources[plan.numbers[0]].output

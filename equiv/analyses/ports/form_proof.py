@@ -12,9 +12,9 @@ from equiv.elements import KINDS, Element
 from equiv.elements.element import Options
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import like, written
 from equiv.equations.solution import Solver
 from equiv.network import Network
-from equiv.units import Rectangular
 
 _FEWEST = 3
 
@@ -33,6 +33,7 @@ def proved(network: Network, e: Equivalent, form: PortForm) -> float | None:
         factors = AC_LOADS if e.frequency.omega else DC_LOADS
         loads = np.array([base * factors[(test + p) % len(factors)] for p in range(count)])
         feeds = np.array([level / base if p == test else 0.0 for p in range(count)])
+        loads, feeds = like(network, loads), like(network, feeds)
         solver = Solver(_loaded(network, e, loads, feeds), e.frequency, "branch-current")
         asked = [Quantity("V", (p.plus, p.minus)) for p in e.ports]
         if not (solver.consistent(solver.u) and all(map(solver.unique, asked))):
@@ -56,15 +57,12 @@ def _loaded(network: Network, e: Equivalent, loads: Numbers, feeds: Numbers) -> 
     elements: list[Element] = []
     for p, load, feed in zip(e.ports, loads.tolist(), feeds.tolist(), strict=True):
         ends = (p.plus, p.minus)
-        if isinstance(load, complex):
-            value = Rectangular(Decimal(load.real), Decimal(load.imag))
-            elements.append(KINDS["impedance"](f"load at {p.name}", ends, value))
-        else:
-            elements.append(KINDS["resistor"](f"load at {p.name}", ends, Decimal(load)))
+        kind = "impedance" if isinstance(load, complex) or load.imag else "resistor"
+        elements.append(KINDS[kind](f"load at {p.name}", ends, written(load)))
         if feed:
             # a `peak` file would take the value for a peak
             peak = network.phasors == "peak" and e.frequency.omega
-            amount = Decimal(feed) * (Decimal(2).sqrt() if peak else 1)
+            amount = Decimal(feed) * Decimal(2).sqrt() if peak else written(feed)
             options = Options(at=e.frequency)
             elements.append(
                 KINDS["current"](f"feed at {p.name}", ends[::-1], amount, options=options)
@@ -103,7 +101,7 @@ def _sizes(form: PortForm, names: tuple[str, ...], v: Numbers, j: Numbers) -> Nu
     for name in names:
         port = int(name.lstrip("-vjab")) - 1
         if name[0] in "ab":
-            r = form.references[port]
+            r = float(form.references[port])
             found.append((v[port] + r * j[port]) / (2 * r**0.5))
         else:
             found.append(v[port] if name[0] == "v" else j[port])

@@ -4,12 +4,14 @@ from __future__ import annotations
 
 from typing import Any
 
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes
 from equiv.analyses.headings import frequency_words
 from equiv.analyses.ports.forms import PortForm, unit_of
 from equiv.analyses.ports.proof import Equivalent
 from equiv.analyses.ports.tables import value_cell
 from equiv.analyses.result import pair
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
+from equiv.equations.scalars import scalar
 from equiv.network import Network
 from equiv.units import say
 
@@ -18,7 +20,7 @@ _INTO = "currents j into the ports (j = -i of the equivalents)"
 
 def form_tables(network: Network, e: Equivalent, form: PortForm) -> list[Table]:
     """The parameters, and the source vector term by term."""
-    return [_parameter_table(network, e, form), _source_table(e, form)]
+    return [_parameter_table(network, e, form), _source_table(network, e, form)]
 
 
 def equation(form: PortForm) -> str:
@@ -41,7 +43,7 @@ def _port_words(e: Equivalent, form: PortForm) -> tuple[str, ...]:
     if form.form != "s":
         return words, _INTO[0].upper() + _INTO[1:]
     alike = len(set(form.references)) == 1
-    refs = ", ".join(say(r, "ohm") for r in form.references[: 1 if alike else None])
+    refs = ", ".join(say(float(r), "ohm") for r in form.references[: 1 if alike else None])
     return (
         words,
         f"Waves a into the ports, b out of them: a, b = (v ± R·j)/(2·√R), R = {refs}",
@@ -54,7 +56,7 @@ def _parameter_table(network: Network, e: Equivalent, form: PortForm) -> Table:
     split = (Column("real part"), Column("imaginary part")) if complex_ else ()
     columns = (
         Column("parameter", key=True), Column("gives", key=True), Column("from"), Column("value"),
-        *split,
+        *split, *exact_columns(network, ("exact", "")),
     )  # fmt: skip
     assert form.parameters is not None
     rows = []
@@ -65,10 +67,12 @@ def _parameter_table(network: Network, e: Equivalent, form: PortForm) -> Table:
             cells: list[Cell] = [Measure(number, units[r][c])]
             if complex_:
                 cells += [Measure(number.real, units[r][c]), Measure(number.imag, units[r][c])]
+            cells += exact_cells(network, scalar(form.parameters[r, c]), unit=units[r][c])
             rows.append(Row((parameter_name(form, r, c), left, right, *cells)))
     title = network.title or "Port parameters"
     subtitles = (*_port_words(e, form), f"{equation(form)}; {frequency_words(e.frequency)}")
-    return Table(title, subtitles, columns, tuple(rows), name="parameters")
+    notes = tuple(exact_notes(rows))
+    return Table(title, subtitles, columns, tuple(rows), notes, name="parameters")
 
 
 def parameter_name(form: PortForm, row: int, column: int) -> str:
@@ -79,25 +83,34 @@ def parameter_name(form: PortForm, row: int, column: int) -> str:
     return f"{form.form}{row + 1}{comma}{column + 1}"
 
 
-def _source_table(e: Equivalent, form: PortForm) -> Table:
+def _source_table(network: Network, e: Equivalent, form: PortForm) -> Table:
     assert form.terms is not None and form.sources is not None
     left = form.sides.left
     columns = (
         Column("no.", key=True), Column("source", key=True), Column("value"),
         *(Column(name, unit_of(name), family=name[0]) for name in left),
+        *exact_columns(network, *((f"exact {name}", unit_of(name)) for name in left)),
     )  # fmt: skip
     rows = [
         Row(
             (
                 k + 1, name, value_cell(e, value),
                 *(_number(e, form.terms[r, k]) for r in range(len(left))),
+                *exact_cells(network, *map(scalar, form.terms[:, k])),
             )
         )
         for k, (name, value) in enumerate(zip(e.sources, e.values, strict=True))
     ]  # fmt: skip
-    rows.append(Row(("", "sum", "", *(_number(e, x) for x in form.sources)), total=True))
+    sums = (
+        *(_number(e, x) for x in form.sources),
+        *exact_cells(network, *map(scalar, form.sources)),
+    )
+    rows.append(Row(("", "sum", "", *sums), total=True))
     zero = ", ".join(form.sides.right)
-    notes = (f"What stands on the left with {zero} at zero, from each source and in sum.",)
+    notes = (
+        f"What stands on the left with {zero} at zero, from each source and in sum.",
+        *exact_notes(rows),
+    )
     return Table("Source vector", (frequency_words(e.frequency),), columns, tuple(rows), notes,
                  name="sources")  # fmt: skip
 
@@ -107,15 +120,15 @@ def form_data(e: Equivalent, form: PortForm) -> dict[str, Any]:
     assert form.parameters is not None and form.terms is not None and form.sources is not None
     return {
         "form": form.form,
-        "reference": list(form.references) if form.form == "s" else None,
+        "reference": list(map(float, form.references)) if form.form == "s" else None,
         "equation": equation(form),
         "currents": "into the ports",
         "units": form.units(),
-        "parameters": [[pair(complex(x)) for x in row] for row in form.parameters],
-        "sources": [pair(complex(x)) for x in form.sources],
+        "parameters": [[pair(scalar(x)) for x in row] for row in form.parameters],
+        "sources": [pair(scalar(x)) for x in form.sources],
         "source_units": [unit_of(name) for name in form.sides.left],
         "source_terms": [
-            {"source": name, "sources": [pair(complex(x)) for x in form.terms[:, k]]}
+            {"source": name, "sources": [pair(scalar(x)) for x in form.terms[:, k]]}
             for k, name in enumerate(e.sources)
         ],
     }

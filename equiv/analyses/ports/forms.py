@@ -16,7 +16,6 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass, field
-from decimal import Decimal
 from itertools import product
 
 import numpy as np
@@ -35,6 +34,7 @@ from equiv.analyses.ports.tests import responses
 from equiv.elements import KINDS
 from equiv.equations.layout import Numbers
 from equiv.equations.port_relation import PortRelation, null_space
+from equiv.equations.scalars import written
 from equiv.equations.solution import source_values
 from equiv.network import Network
 from equiv.units import say
@@ -138,7 +138,7 @@ def _by_loaded_tests(network: Network, e: Equivalent, references: tuple[float, .
     """1 A into each port with its reference across it: a = √R/2, b = v/√R - a."""
     count = len(e.ports)
     loads = [
-        KINDS["resistor"](f"reference at {p.name}", (p.plus, p.minus), Decimal(r))
+        KINDS["resistor"](f"reference at {p.name}", (p.plus, p.minus), written(r))
         for p, r in zip(e.ports, references, strict=True)
     ]
     found, reason = responses(network.with_elements(loads), e.ports, e.frequency, "current")

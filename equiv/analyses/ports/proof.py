@@ -12,10 +12,10 @@ from equiv.analyses.superposition.paths import dead_network
 from equiv.elements import KINDS, Element
 from equiv.elements.element import Frequency, Options
 from equiv.elements.quantity import Quantity
-from equiv.equations.layout import Numbers
+from equiv.equations.layout import Numbers, arithmetic_of
+from equiv.equations.scalars import in_floats, is_exact, like, scalar, solved, written
 from equiv.equations.solution import Solver
 from equiv.network import Network, Port
-from equiv.units import Rectangular, as_number
 
 DC_LOADS = (0.5, 2.0, 7.0, 0.3, 11.0, 3.0)
 AC_LOADS = (0.5 + 0.0j, 1.5 - 1.0j, 2.0 + 3.0j, 0.3 + 0.4j, 5.0 - 2.0j, 1.1 + 0.7j)
@@ -96,7 +96,8 @@ class Equivalent:
         if matrix is None:
             return []
         own = np.diag(matrix)
-        return [0.0 if abs(x.real) <= _ZERO * abs(x) else float(x.real) for x in own]
+        zero = 0.0 if own.dtype == object else _ZERO
+        return [0.0 if abs(x.real) <= zero * abs(x) else float(x.real) for x in own]
 
     @property
     def least_resistance(self) -> float | None:
@@ -104,6 +105,7 @@ class Equivalent:
         matrix = self.impedance if self.impedance is not None else self.admittance
         if matrix is None:
             return None
+        matrix = in_floats(matrix)
         least = float(np.linalg.eigvalsh((matrix + matrix.conj().T) / 2).min())
         return 0.0 if abs(least) <= _NOISE * np.abs(matrix).max() else least
 
@@ -113,13 +115,11 @@ class Equivalent:
         if self.impedance is not None:
             voc = self.open_voltage
             assert voc is not None
-            return np.asarray(
-                np.linalg.solve(unit + self.impedance / load, voc + self.impedance.sum(1) * extra)
-            )
+            return solved(unit + self.impedance / load, voc + self.impedance.sum(1) * extra)
         assert self.admittance is not None
         isc = self.short_current
         assert isc is not None
-        return np.asarray(np.linalg.solve(self.admittance + unit / load, isc + extra))
+        return solved(self.admittance + unit / load, isc + extra)
 
 
 def three_loads(network: Network, e: Equivalent) -> float | None:
@@ -135,15 +135,15 @@ def three_loads(network: Network, e: Equivalent) -> float | None:
     for factor in factors:
         if len(e.loads) == _LOADS:
             break
-        load = complex(base * factor)
+        load = scalar(like(network, np.array([base * factor]))[0])
         solver = Solver(_loaded(network, e, load, extra), e.frequency, "branch-current")
         asked = [Quantity("V", (p.plus, p.minus)) for p in e.ports]
         if not (solver.consistent(solver.u) and all(map(solver.unique, asked))):
             continue
         state = solver.state()
         found = np.array([state.of(q) for q in asked])
-        told = e.loaded(load if e.frequency.omega else load.real, extra)
-        e.loads.append(LoadTest(load, tuple(found), tuple(map(complex, told))))
+        told = e.loaded(load if e.frequency.omega or is_exact(load) else load.real, extra)
+        e.loads.append(LoadTest(load, tuple(found), tuple(map(scalar, told))))
         off = max(off, float(np.abs(found - told).max()))
         size = max(size, float(np.abs(found).max()))
     return (off / size if size else off) if e.loads else None
@@ -162,11 +162,9 @@ def _loaded(network: Network, e: Equivalent, load: complex, extra: float) -> Net
     elements: list[Element] = []
     for p in e.ports:
         nodes = (p.plus, p.minus)
-        value = Rectangular(Decimal(load.real), Decimal(load.imag))
         kind = "impedance" if load.imag else "resistor"
-        elements.append(
-            KINDS[kind](f"load at {p.name}", nodes, value if load.imag else Decimal(load.real))
-        )
+        value = written(load if load.imag or is_exact(load) else load.real)
+        elements.append(KINDS[kind](f"load at {p.name}", nodes, value))
         if extra:
             options = Options(at=e.frequency)
             # a `peak` file would take the value for a peak
@@ -191,7 +189,7 @@ def blackman(network: Network, e: Equivalent) -> float | None:
     (element,) = network.controlled
     if element.senses is None or not np.abs(e.impedance).max():
         return None
-    gain = as_number(element.value)  # type: ignore[arg-type]
+    (gain,) = arithmetic_of(network).column([element.value], [element]).tolist()
     dead = dead_network(network)
     ratios = []
     z0 = 0j
@@ -201,12 +199,12 @@ def blackman(network: Network, e: Equivalent) -> float | None:
         if solver.degenerate is not None:
             return None
         h = solver.coefficients(element.senses)
-        ratios.append(-gain * complex(h[solver.layout.source_number[element.name]]))
+        ratios.append(-gain * scalar(h[solver.layout.source_number[element.name]]))
         if test == "current":
             port = e.ports[0]
             response = solver.coefficients(Quantity("V", (port.plus, port.minus)))
-            z0 = complex(response[solver.layout.source_number[names[0]]])
+            z0 = scalar(response[solver.layout.source_number[names[0]]])
     opened, shorted = ratios
     told = z0 * (1 + shorted) / (1 + opened)
-    z = complex(e.impedance[0, 0])
-    return abs(z - told) / abs(z)
+    z = scalar(e.impedance[0, 0])
+    return float(abs(z - told) / abs(z))

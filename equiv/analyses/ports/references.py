@@ -6,6 +6,7 @@ import math
 from collections.abc import Sequence
 from decimal import Decimal
 from fractions import Fraction
+from typing import cast
 
 from equiv.analyses.ports.relation import FORMS, OF_TWO_PORTS
 from equiv.errors import Diagnostic, UsageError
@@ -40,10 +41,13 @@ def _are(ports: int) -> str:
     return "is one" if ports == 1 else f"are {ports}"
 
 
-def references_of(reference: Ohms | Sequence[Ohms], ports: int) -> tuple[float, ...]:
-    """A real positive reference (ohm) for each port.
+def references_of(
+    reference: Ohms | Sequence[Ohms], ports: int, exact: bool = False
+) -> tuple[float, ...]:
+    """A real positive reference (ohm) for each port; exact numbers where they are wanted.
 
-    Errors: UsageError for another value, or for as many values as fit neither one nor each port.
+    Errors: UsageError for another value, for as many values as fit neither one nor each port, or
+    for one whose square root, which an exact result needs, is irrational.
     """
     given = [reference] if isinstance(reference, Ohms) else list(reference)
     if len(given) not in (1, ports):
@@ -55,7 +59,26 @@ def references_of(reference: Ohms | Sequence[Ohms], ports: int) -> tuple[float, 
             )
         )
     found = [_ohms(one) for one in given]
+    if exact:
+        found = [_with_root(one) for one in given]
     return tuple(found * ports if len(found) == 1 else found)
+
+
+def _with_root(given: Ohms) -> float:
+    """A reference as an exact number that has a rational square root."""
+    from equiv.equations.exact.number import Exact
+
+    read = value(given, "ohm") if isinstance(given, str) else given
+    ohms = Exact.of(Decimal(repr(read)) if isinstance(read, float) else read)
+    try:
+        ohms.sqrt()
+    except ValueError:
+        message = (
+            f"no exact result: the waves of s are over √R, and the root of {given} is irrational"
+        )
+        hint = "give a reference that is a square, as 49 ohm; or leave --exact out"
+        raise UsageError(Diagnostic("irrational", message, hint=hint)) from None
+    return cast(float, ohms)
 
 
 def _ohms(given: Ohms) -> float:

@@ -13,6 +13,7 @@ import numpy as np
 
 from equiv.equations.layout import Numbers
 from equiv.equations.port_relation import RANK_LIMIT, PortRelation
+from equiv.equations.scalars import solved
 
 FORMS = ("z", "y", "h", "g", "abcd", "s")
 OF_TWO_PORTS = ("h", "g", "abcd")
@@ -65,7 +66,7 @@ def by_tests(kinds: tuple[str, ...], response: Numbers, terms: Numbers) -> PortR
     answers_v = np.array([kind == "current" for kind in kinds])
     m = np.where(answers_v, unit, -response)
     n = np.where(answers_v, -response, unit)
-    own = np.abs(np.diag(response))
+    own = np.abs(np.diag(response)).astype(float)
     ohms = np.where(own > 0, own, 1.0)
     ohms = np.where(answers_v, ohms, 1 / ohms)
     return PortRelation(m, n, terms, np.sqrt(ohms), 1 / np.sqrt(ohms))
@@ -80,6 +81,8 @@ def by_waves(s: Numbers, terms: Numbers, references: Numbers) -> PortRelation:
 
 def solved_for(relation: PortRelation, form: str, references: Numbers) -> Solved | None:
     """The parameters of a form and its source terms, in SI units; None where it does not exist."""
+    if relation.m.dtype == object:
+        return _solved_exactly(relation, form, references)
     count = len(relation.volts)
     volts, amperes = relation.volts, relation.amperes
     if form == "s":
@@ -92,9 +95,22 @@ def solved_for(relation: PortRelation, form: str, references: Numbers) -> Solved
     margin = float(smallest / np.linalg.norm(rows, 2))
     if not margin > RANK_LIMIT:
         return None
-    solved = np.linalg.solve(left, np.hstack([-right, k]))
-    parameters = solved[:, :count] * sizes_left[:, None] / sizes_right
-    return Solved(parameters, solved[:, count:] * sizes_left[:, None], margin)
+    found = np.linalg.solve(left, np.hstack([-right, k]))
+    parameters = found[:, :count] * sizes_left[:, None] / sizes_right
+    return Solved(parameters, found[:, count:] * sizes_left[:, None], margin)
+
+
+def _solved_exactly(relation: PortRelation, form: str, references: Numbers) -> Solved | None:
+    """The same in exact numbers, where a matrix is singular or it is not."""
+    count = len(relation.volts)
+    volts = np.sqrt(references) if form == "s" else np.ones(count, object)
+    rows = np.hstack([relation.m * volts, relation.n / volts])
+    left, right, _, _ = _placed(rows, form, volts, volts)
+    try:
+        found = solved(left, np.hstack([-right, relation.k]))
+    except np.linalg.LinAlgError:
+        return None
+    return Solved(found[:, :count], found[:, count:])
 
 
 def _placed(

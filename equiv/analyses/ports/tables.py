@@ -4,18 +4,20 @@ from __future__ import annotations
 
 from typing import Any
 
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes
 from equiv.analyses.headings import at_words, frequency_words
 from equiv.analyses.ports.proof import Equivalent
 from equiv.analyses.result import pair
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar
 from equiv.network import Network
 
 
 def port_tables(network: Network, e: Equivalent) -> list[Table]:
     """Terms, equivalents, test sources, and the three-load proof."""
     tables = [_term_table(network, e, index) for index in range(len(e.ports))]
-    tables.append(_equivalents_table(e))
+    tables.append(_equivalents_table(network, e))
     if e.thevenin or e.norton:
         tables.append(_tests_table(e))
     if e.loads:
@@ -31,6 +33,10 @@ def _entry(e: Equivalent, matrix: Numbers | None, *index: int) -> Cell:
     return None if matrix is None else _number(e, matrix[index])
 
 
+def _exact(matrix: Numbers | None, *index: int) -> complex | None:
+    return None if matrix is None else scalar(matrix[index])
+
+
 def _term(e: Equivalent, matrix: Numbers | None, port: int, source: int) -> Cell:
     return _entry(e, matrix, port, source) if e.alone[source] else None
 
@@ -43,16 +49,9 @@ def _term_table(network: Network, e: Equivalent, index: int) -> Table:
         Column("value"),
         Column("open-circuit voltage", "V", family="voltage"),
         Column(_short(e), "A", family="current"),
+        *exact_columns(network, ("exact voltage", "V"), ("exact current", "A")),
     )
-    rows = [
-        Row(
-            (
-                k + 1, name, value_cell(e, value),
-                _term(e, e.voltages, index, k), _term(e, e.currents, index, k),
-            )
-        )
-        for k, (name, value) in enumerate(zip(e.sources, e.values, strict=True))
-    ]  # fmt: skip
+    rows = [Row(_source_cells(network, e, index, k)) for k in range(len(e.sources))]
     notes = [
         f"{name}: with it alone there is no solution, so it has no term."
         for k, name in enumerate(e.sources)
@@ -63,8 +62,11 @@ def _term_table(network: Network, e: Equivalent, index: int) -> Table:
             "The voltage is with all these ports open, the current with all of them shorted at "
             "once: for the current of one fault, ask for its port alone."
         )
-    total = (_entry(e, e.open_voltage, index), _entry(e, e.short_current, index))
-    rows.append(Row(("", "all sources", "", *total), total=True))
+    both = (e.open_voltage, e.short_current)
+    total = [_entry(e, vector, index) for vector in both]
+    exact = exact_cells(network, *(_exact(vector, index) for vector in both))
+    rows.append(Row(("", "all sources", "", *total, *exact), total=True))
+    notes += exact_notes(rows)
     subtitles = (
         f"Port {port.name}: voltage of {port.plus} over {port.minus}, "
         f"current out of {port.plus} into the load",
@@ -80,6 +82,19 @@ def _term_table(network: Network, e: Equivalent, index: int) -> Table:
     )
 
 
+def _source_cells(network: Network, e: Equivalent, port: int, source: int) -> tuple[Cell, ...]:
+    """The cells of a source's terms at a port."""
+    both = (e.voltages, e.currents)
+    exact = (_exact(terms, port, source) if e.alone[source] else None for terms in both)
+    return (
+        source + 1,
+        e.sources[source],
+        value_cell(e, e.values[source]),
+        *(_term(e, terms, port, source) for terms in both),
+        *exact_cells(network, *exact),
+    )
+
+
 def _short(e: Equivalent) -> str:
     """What the short-circuit current is, where there are several ports."""
     return "short-circuit current" + (", all shorted" if len(e.ports) > 1 else "")
@@ -92,22 +107,25 @@ def value_cell(e: Equivalent, value: tuple[complex, str] | None) -> Cell:
     return Measure(_number(e, value[0]), "V" if value[1] == "V" else "A")
 
 
-def _equivalents_table(e: Equivalent) -> Table:
+def _equivalents_table(network: Network, e: Equivalent) -> Table:
     complex_ = bool(e.frequency.omega)
     parts = (Column("real part"), Column("imaginary part")) if complex_ else ()
     columns = (
         Column("equivalent", key=True), Column("quantity", key=True), Column("value"), *parts,
+        *exact_columns(network, ("exact", "")),
     )  # fmt: skip
     several = len(e.ports) > 1
 
     def row(equivalent: str, quantity: str, value: Any, unit: str) -> Row:
         if value is None:
-            return Row((equivalent, quantity, None, *([None, None] if complex_ else [])))
+            missing: list[Cell] = [None] * (3 if complex_ else 1)
+            return Row((equivalent, quantity, *missing, *exact_cells(network, None)))
         number = _number(e, value)
         split: list[Cell] = []
         if complex_:
             split = [Measure(number.real, unit), Measure(number.imag, unit)]
-        return Row((equivalent, quantity, Measure(number, unit), *split))
+        exact = exact_cells(network, scalar(value), unit=unit)
+        return Row((equivalent, quantity, Measure(number, unit), *split, *exact))
 
     rows: list[Row] = []
     for name, column, first, unit, matrix, second, over in (
@@ -126,7 +144,8 @@ def _equivalents_table(e: Equivalent) -> Table:
         rows = []
     columns = columns if rows else ()
     return Table("Equivalents", (frequency_words(e.frequency),), columns, tuple(rows),
-                 tuple(_existence_notes(e)), name=f"equivalents{at_words(e.frequency)}")  # fmt: skip
+                 (*_existence_notes(e), *exact_notes(rows)),
+                 name=f"equivalents{at_words(e.frequency)}")  # fmt: skip
 
 
 def _existence_notes(e: Equivalent) -> list[str]:
@@ -151,9 +170,9 @@ def tests_of(e: Equivalent) -> list[tuple[int, str, list[complex]]]:
     found: list[tuple[int, str, list[complex]]] = []
     for p in range(len(e.ports)):
         if e.impedance is not None:
-            found.append((p, "current", [complex(z) for z in e.impedance[:, p]]))
+            found.append((p, "current", [scalar(z) for z in e.impedance[:, p]]))
         if e.admittance is not None:
-            found.append((p, "voltage", [complex(y) for y in e.admittance[:, p]]))
+            found.append((p, "voltage", [scalar(y) for y in e.admittance[:, p]]))
     return found
 
 
@@ -216,9 +235,9 @@ def _proof_table(e: Equivalent) -> Table:
 def port_data(e: Equivalent) -> dict[str, Any]:
     """The JSON of an equivalent."""
     vectors = [e.open_voltage, e.short_current]
-    voltage, current = (None if v is None else [pair(complex(x)) for x in v] for v in vectors)
+    voltage, current = (None if v is None else [pair(scalar(x)) for x in v] for v in vectors)
     impedance, admittance = (
-        None if m is None else [[pair(complex(x)) for x in row] for row in m]
+        None if m is None else [[pair(scalar(x)) for x in row] for row in m]
         for m in (e.impedance, e.admittance)
     )
     return {
@@ -245,4 +264,4 @@ def _column(e: Equivalent, terms: Numbers | None, source: int) -> list[Any] | No
     """The JSON of a source's terms at every port; None where they do not exist."""
     if terms is None or not e.alone[source]:
         return None
-    return [pair(complex(x)) for x in terms[:, source]]
+    return [pair(scalar(x)) for x in terms[:, source]]

@@ -13,6 +13,7 @@ from equiv.elements import KINDS
 from equiv.elements.element import Frequency, Options
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import like
 from equiv.equations.solution import CLEANED_UP_TO, Solver
 from equiv.errors import NoUniqueSolutionError
 from equiv.network import Network, Port
@@ -90,7 +91,8 @@ def _seen(solver: Solver, quantities: Sequence[Quantity], tests: int) -> Seen:
     u[-tests:] = 1
     h = np.array([solver.coefficients(q) for q in quantities])
     total = h[:, :-tests] @ u[:-tests]
-    if solver.form == "branch-current" and len(u) <= MOST_SOURCES:
+    rounds = solver.form == "branch-current" and not solver.network.exact
+    if rounds and len(u) <= MOST_SOURCES:
         columns = np.diag(u)
         own = u.copy()
         own[-tests:] = 0
@@ -98,7 +100,7 @@ def _seen(solver: Solver, quantities: Sequence[Quantity], tests: int) -> Seen:
         h = np.where(np.abs(h * u) > limits[:, :-1], h, 0)
         total = np.where(np.abs(total) > limits[:, -1], total, 0)
     alone = np.array([solver.consistent(column) for column in np.diag(u)[:-tests]], bool)
-    return Seen(h, None, alone, total, solver)
+    return Seen(h, None, alone, like(solver.network, total), solver)
 
 
 def why_not_seen(

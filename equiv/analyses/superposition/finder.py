@@ -8,6 +8,14 @@ from functools import partial
 from equiv.analyses.cautions import about_solver
 from equiv.analyses.headings import at_words
 from equiv.analyses.result import Caution, Check
+from equiv.analyses.superposition.arbiter import (
+    MOST_WORK,
+    Methods,
+    decide,
+    exact_solver,
+    in_floats,
+    may_decide,
+)
 from equiv.analyses.superposition.paths import paths_check, paths_of
 from equiv.analyses.superposition.power import power_at
 from equiv.analyses.superposition.subcircuits import (
@@ -18,7 +26,7 @@ from equiv.analyses.superposition.subcircuits import (
     controlled_states,
 )
 from equiv.analyses.superposition.term_maker import Existence, TermMaker, has_solution, rounding_of
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT, ControlledState, FrequencyTerms
+from equiv.analyses.superposition.terms import ControlledState, FrequencyTerms, limit_of
 from equiv.elements.element import Frequency
 from equiv.equations.solution import Solver, State, all_on
 from equiv.network import Find, Network, Progress
@@ -34,19 +42,20 @@ class TermFinder:
         self.check, self.progress = check, progress
         self.checks: list[Check] = []
         self.cautions: list[Caution] = []
-        self.how = ""
+        self.how = self._how_decided = ""
 
     def at(self, frequency: Frequency, finds: Sequence[Find]) -> list[FrequencyTerms]:
         """The terms of every quantity at one frequency, or the reason why it has no value.
 
-        Where a term and its sub-circuit disagree, the nodal form has lost its digits and the
-        branch-current form gives the terms.
+        Where a term and its sub-circuit disagree, exact arithmetic decides; in a network that is
+        too large for it the branch-current form gives the terms.
         """
         self.progress("equations", 0, 1)
         solver, state = all_on(self.network, frequency)
         subs = SubCircuits.solve(
             self.network, frequency, self._plans(solver), self.check, solver, self.progress
         )
+        first = solver
         found, checks = self._tables(solver, state, subs, finds)
         # where what they give is in doubt, values that are only rounding must not pass for results
         if solver.degenerate is not None or not all(f.agrees for f in found):
@@ -56,13 +65,46 @@ class TermFinder:
                 state = solver.state()
             before = found
             found, checks = self._tables(solver, state, subs, finds, clean=True)
-            solver.took_over |= _lost_digits(before, found)
+            decided = None
+            if _lost_digits(before, found):
+                decided = self._decided(first, subs, finds, (before, found))
+                solver.took_over |= decided is None
+            found, checks = decided or (found, checks)
         self.how = subs.how_in_words + (", as the terms were" if solver.took_over else "")
+        self.how += self._how_decided
         where = at_words(frequency)
-        balance = Check(f"power balance{where}", state.balance(), CLOSURE_LIMIT, shared=True)
+        balance = Check(
+            f"power balance{where}", state.balance(), limit_of(self.network), shared=True
+        )
         self.checks += [*checks, balance] if solver.consistent(solver.u) else checks
         self.cautions += about_solver(solver)
         return found
+
+    def _decided(
+        self,
+        solver: Solver,
+        subs: SubCircuits,
+        finds: Sequence[Find],
+        methods: tuple[Sequence[FrequencyTerms], Sequence[FrequencyTerms]],
+    ) -> tuple[list[FrequencyTerms], list[Check]] | None:
+        """The terms by exact arithmetic, where one of the two methods has lost its digits."""
+        if not may_decide(self.network, solver):
+            return None
+        exact = exact_solver(solver)
+        state = exact.state()
+        true, checks = self._tables(exact, state, subs, finds)
+        verdict = decide(Methods(*methods, true, solver.form))
+        if verdict is None:
+            return None
+        self.cautions.append(Caution("digits-lost", verdict.words))
+        if not verdict.both or len(subs.plans) * exact.system.size > MOST_WORK:
+            return verdict.found, checks
+        again = SubCircuits.solve(
+            exact.network, solver.frequency, subs.plans, self.check, exact, self.progress
+        )
+        true, _ = self._tables(exact, state, again, finds)
+        self._how_decided = ", in exact arithmetic"
+        return [in_floats(at, [t.check for t in at.terms]) for at in true], checks
 
     def _tables(
         self,
@@ -89,8 +131,8 @@ class TermFinder:
             maker = TermMaker(solver, q, rounding)
             terms = maker.terms(subs, existence.reasons(q), controlled)
             if self.paths:
-                terms = paths_of(self.network, solver, q, terms, subs.plans)
-                checks.append(paths_check(q, terms))
+                terms = paths_of(solver.network, solver, q, terms, subs.plans)
+                checks.append(paths_check(self.network, q, terms))
             out.append(FrequencyTerms(solver.frequency, tuple(terms), maker.all_on(state)))
         return out, checks
 

@@ -17,10 +17,11 @@ import numpy as np
 
 from equiv.analyses.result import Check
 from equiv.analyses.superposition.subcircuits import MOST_SOURCES, MOST_UNKNOWNS, Plan
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT, Paths, Term
+from equiv.analyses.superposition.terms import Paths, Term, limit_of
 from equiv.elements import KINDS
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar, vector
 from equiv.equations.solution import Solver
 from equiv.network import Network
 
@@ -37,6 +38,8 @@ def paths_of(
     network: Network, solver: Solver, quantity: Quantity, terms: list[Term], plans: Sequence[Plan]
 ) -> list[Term]:
     """The terms with their paths; unchanged where the dead network decides nothing."""
+    if not terms:
+        return terms
     dead = Solver(dead_network(network), solver.frequency)
     if dead.degenerate is not None:
         return terms
@@ -53,8 +56,8 @@ def paths_of(
             out.append(term)
             continue
         parts = np.where(np.abs(h * drives[:, k]) > limits[k], h * drives[:, k], 0)
-        direct = complex(parts[[number[m] for m in plan.members]].sum())
-        through = tuple((name, complex(parts[n])) for name, n in controlled)
+        direct = scalar(parts[[number[m] for m in plan.members]].sum())
+        through = tuple((name, scalar(parts[n])) for name, n in controlled)
         out.append(replace(term, paths=Paths(direct, through)))
     return out
 
@@ -68,15 +71,16 @@ def _drives(dead: Solver, solver: Solver, plans: Sequence[Plan]) -> Numbers:
         drives[number[name]] = u[row]
     for c in solver.network.controlled:
         output = Quantity(c.output, (c.name,))
-        values = np.array(solver.values(output, u))
+        values = vector(solver.values(output, u))
         values = np.where(np.abs(values) > solver.rounding(output, u), values, 0)
-        drives[number[c.name]] = values if np.iscomplexobj(drives) else values.real
+        drives[number[c.name]] = values.real if drives.dtype == float else values
     return drives
 
 
-def paths_check(quantity: Quantity, terms: Sequence[Term]) -> Check:
+def paths_check(network: Network, quantity: Quantity, terms: Sequence[Term]) -> Check:
     """That the paths of each term add up to it, relative to Σ|path| over all terms."""
     split = [(t, t.paths) for t in terms if t.paths is not None]
     size = sum(p.gross for _, p in split)
     off = max((abs(p.total - t.number) for t, p in split), default=0.0)
-    return Check(f"paths against terms, {quantity}", off / size if size else off, CLOSURE_LIMIT)
+    name, limit = f"paths against terms, {quantity}", limit_of(network)
+    return Check(name, off / size if size else off, limit)

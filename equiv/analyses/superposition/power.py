@@ -16,6 +16,7 @@ from equiv.analyses.superposition.term_maker import Existence, Rounding, TermMak
 from equiv.analyses.superposition.terms import FrequencyTerms, Power
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar, vector
 from equiv.equations.solution import Solver, State
 from equiv.errors import Diagnostic, UsageError
 
@@ -37,12 +38,12 @@ def power_at(
     if len(plans) > MOST_SOURCES:
         raise UsageError(_too_many(quantity, len(plans)))
     count = len(plans)
-    products = np.zeros((count, count), dtype=complex)
+    products = np.zeros((count, count), object if solver.network.exact else complex)
     all_on, size = 0j, 0.0
     for pair in range(len(solver.network.elements[quantity.names[0]].pairs)):
         makers = [TermMaker(solver, Quantity(w, quantity.names, pair), rounding) for w in "VI"]
-        v, i = (np.array(maker.numbers(plans), dtype=complex) for maker in makers)
-        products += np.outer(v, i.conj())
+        v, i = (vector(maker.numbers(plans)) for maker in makers)
+        products += np.outer(v, np.conj(i))
         volts, amperes = (maker.all_on(state) for maker in makers)
         all_on += volts * amperes.conjugate()
         size += float(np.abs(v).sum() * np.abs(i).sum())
@@ -50,7 +51,7 @@ def power_at(
     exists = [reason is None for reason in reasons]
     power = Power(
         sources=tuple(plan.name for plan in plans),
-        own=tuple(complex(products[j, j]) if exists[j] else None for j in range(count)),
+        own=tuple(scalar(products[j, j]) if exists[j] else None for j in range(count)),
         cross=tuple(
             tuple(_cross(products, exists, j, k) for k in range(count)) for j in range(count)
         ),
@@ -64,8 +65,8 @@ def power_at(
 def _cross(products: Numbers, exists: Sequence[bool], j: int, k: int) -> complex | None:
     """What a pair gives together; nothing on and below the diagonal."""
     if k <= j:
-        return 0j
-    return complex(products[j, k] + products[k, j]) if exists[j] and exists[k] else None
+        return scalar(0) if products.dtype == object else 0j
+    return scalar(products[j, k] + products[k, j]) if exists[j] and exists[k] else None
 
 
 def _too_many(quantity: Quantity, count: int) -> Diagnostic:

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes
 from equiv.analyses.headings import name_of, titles_of
 from equiv.analyses.result import Check
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT, FrequencyTerms, Power, QuantityTerms
+from equiv.analyses.superposition.terms import FrequencyTerms, Power, QuantityTerms, limit_of
 from equiv.analyses.tables import Column, Row, Table
 from equiv.network import Network
 
@@ -36,7 +37,7 @@ def power_tables(network: Network, q: QuantityTerms, at: FrequencyTerms) -> list
     ]
     return [
         Table(title, subtitles, columns, tuple(matrix), tuple(notes), name=name_of(q, at)),
-        _power_sums(q, at, power),
+        _power_sums(network, q, at, power),
     ]
 
 
@@ -44,7 +45,7 @@ def _real(value: complex | None) -> float | None:
     return None if value is None else value.real
 
 
-def _power_sums(q: QuantityTerms, at: FrequencyTerms, power: Power) -> Table:
+def _power_sums(network: Network, q: QuantityTerms, at: FrequencyTerms, power: Power) -> Table:
     dc = not at.frequency.omega
     parts = [
         *([("sum of own powers", power.own_sum, False)] if power.complete else []),
@@ -53,14 +54,21 @@ def _power_sums(q: QuantityTerms, at: FrequencyTerms, power: Power) -> Table:
         ("all at once", power.all_on, True),
     ]
     rows = [
-        Row((name, value.real, *([] if dc else [value.imag])), total=total)
+        Row(
+            (name, value.real, *([] if dc else [value.imag]), *exact_cells(network, value)),
+            total=total,
+        )
         for name, value, total in parts
     ]
     reactive = [] if dc else [Column("reactive power", "var", family="power")]
-    columns = (Column("part", key=True), Column("power", "W", family="power"), *reactive)
+    exact = exact_columns(network, ("exact", "W" if dc else "VA"))
+    columns = (Column("part", key=True), Column("power", "W", family="power"), *reactive, *exact)
     notes = (
         "Powers do not superpose: the own powers alone are not the total.",
-        Check("difference of total and all at once", power.difference, CLOSURE_LIMIT).sentence(),
+        Check(
+            "difference of total and all at once", power.difference, limit_of(network)
+        ).sentence(),
+        *exact_notes(rows),
     )
     title = f"{q.heading[0].upper()}{q.heading[1:]}: sums"
     return Table(title, (), columns, tuple(rows), notes, name=f"sums of {name_of(q, at)}")

@@ -19,6 +19,7 @@ from equiv.analyses.superposition.terms import ControlledState
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar
 from equiv.equations.solution import Solver, State
 from equiv.errors import EquivError
 from equiv.network import Branch, Network, Progress
@@ -154,9 +155,9 @@ def controlled_states(network: Network, state: State) -> tuple[ControlledState, 
         assert element.senses is not None
         if element.senses.what == "V":
             first, second = layout.nodes_of(element.senses)
-            sensed = complex(nodes[first] - nodes[second])
+            sensed = scalar(nodes[first] - nodes[second])
         else:
-            sensed = complex(state.currents[layout.branch_of_quantity(element.senses)])
+            sensed = scalar(state.currents[layout.branch_of_quantity(element.senses)])
         branch = layout.branch_of(Branch(element.name, 0))
         output = (state.voltages if element.output == "V" else state.currents)[branch]
         found.append(
@@ -165,7 +166,7 @@ def controlled_states(network: Network, state: State) -> tuple[ControlledState, 
                 kind=element.kind,
                 senses=str(element.senses),
                 sensed=sensed,
-                output=complex(output),
+                output=scalar(output),
                 unit="V" if element.output == "V" else "A",
                 sensed_unit=element.senses.unit,
                 reversed=bool(sensed.real < -_NOTHING * largest[element.senses.what]),

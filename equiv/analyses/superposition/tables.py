@@ -4,16 +4,17 @@ from __future__ import annotations
 
 from itertools import count
 
+from equiv.analyses.exactness import exact_cells, exact_columns, exact_notes
 from equiv.analyses.headings import frequency_words, name_of, titles_of
 from equiv.analyses.result import Check
 from equiv.analyses.superposition.power_tables import power_tables
 from equiv.analyses.superposition.terms import (
-    CLOSURE_LIMIT,
     NOTABLE_CANCELLATION,
     TERM_LIMIT,
     FrequencyTerms,
     QuantityTerms,
     Term,
+    limit_of,
 )
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
 from equiv.network import Network
@@ -54,36 +55,42 @@ def _term_table(
         Column("value"),
         Column("coefficient"),
         Column("contribution", q.unit, repeat=True, family="term"),
+        *exact_columns(network, ("exact", q.unit)),
         *([Column("direction")] if dc else []),
         Column("in-phase share", "%"),
         Column("running sum", q.unit, family="term"),
         Column("check", q.unit, family="term"),
     ]
-    rows = []
+    rows: list[Row] = []
     for number, term, running in zip(count(1), at.terms, at.running_sums, strict=False):
-        rows.append(_term_row(number, term, at.share(term), running, dc))
-        rows += [_member_row(part, dc) for part in term.parts]
+        exact = exact_cells(network, term.contribution)
+        rows.append(_term_row((number, term, at.share(term), running), exact, dc))
+        rows += [
+            _member_row(part, exact_cells(network, part.contribution), dc) for part in term.parts
+        ]
     blank: list[Cell] = [""] if dc else []
     total = at.total if at.complete else None
     way = [_direction(total)] if dc and total is not None else blank
     whole: Cell = 1.0 if at.complete and not at.cancels_to_nothing else ""
-    rows.append(Row(("", "sum", "", "", _cell(total, dc), *way, whole, "", ""), total=True))
-    rows.append(
-        Row(("", "all at once", "", "", _cell(at.all_on, dc), *blank, "", "", ""), total=True)
-    )
+    sums = (_cell(total, dc), *exact_cells(network, total))
+    rows.append(Row(("", "sum", "", "", *sums, *way, whole, "", ""), total=True))
+    sums = (_cell(at.all_on, dc), *exact_cells(network, at.all_on))
+    rows.append(Row(("", "all at once", "", "", *sums, *blank, "", "", ""), total=True))
     return Table(
         title,
         subtitles,
         tuple(columns),
         tuple(rows),
-        tuple(_notes(q, at, how, digits)),
+        (*_notes(network, q, at, how, digits), *exact_notes(rows)),
         name=name_of(q, at),
     )
 
 
 def _term_row(
-    number: int, term: Term, share: float | None, running: complex | None, dc: bool
+    numbered: tuple[int, Term, float | None, complex | None], exact: list[Cell], dc: bool
 ) -> Row:
+    """A row from a term with its number, its share and the sum up to it."""
+    number, term, share, running = numbered
     way = [_direction(term.contribution)] if dc else []
     value = "" if term.value is None else Measure(_real(term.value, dc), term.unit)
     coefficient: Cell = ""
@@ -93,7 +100,7 @@ def _term_row(
         coefficient = None
     return Row(
         (
-            number, term.source, value, coefficient, _cell(term.contribution, dc), *way,
+            number, term.source, value, coefficient, _cell(term.contribution, dc), *exact, *way,
             share, _cell(running, dc), "" if _unchecked(term) else _cell(term.check, dc),
         )
     )  # fmt: skip
@@ -103,7 +110,7 @@ def _unchecked(term: Term) -> bool:
     return term.check is None and term.contribution is not None
 
 
-def _member_row(part: Term, dc: bool) -> Row:
+def _member_row(part: Term, exact: list[Cell], dc: bool) -> Row:
     way = [_direction(part.contribution)] if dc else []
     assert part.value is not None
     coefficient = None if part.coefficient is None else _real(part.coefficient, dc)
@@ -111,7 +118,7 @@ def _member_row(part: Term, dc: bool) -> Row:
         (
             "", part.source, Measure(_real(part.value, dc), part.unit),
             None if coefficient is None else Measure(coefficient, _shown(part.coefficient_unit)),
-            _cell(part.contribution, dc), *way, "", "", "",
+            _cell(part.contribution, dc), *exact, *way, "", "", "",
         ),
         level=1,
     )  # fmt: skip
@@ -136,22 +143,18 @@ def _direction(value: complex | None) -> str:
     return "along" if real > 0 else "against" if real < 0 else "none"
 
 
-def _notes(q: QuantityTerms, at: FrequencyTerms, how: str, digits: int) -> list[str]:
+def _notes(
+    network: Network, q: QuantityTerms, at: FrequencyTerms, how: str, digits: int
+) -> list[str]:
     notes = [f"{term.source}: no term; {term.reason}" for term in at.terms if term.reason]
     if at.complete:
-        notes.append(
-            Check(
-                "difference of sum and all at once, relative", at.difference, CLOSURE_LIMIT
-            ).sentence()
-        )
+        words = "difference of sum and all at once, relative"
+        notes.append(Check(words, at.difference, limit_of(network)).sentence())
     else:
         notes.append("A term does not exist, so there is no sum; all sources at once do.")
     if at.worst_term is not None:
-        notes.append(
-            Check(
-                "largest difference of a term and its check", at.worst_term, TERM_LIMIT
-            ).sentence()
-        )
+        words = "largest difference of a term and its check"
+        notes.append(Check(words, at.worst_term, limit_of(network, TERM_LIMIT)).sentence())
     notes.append(f"Check: {how}.")
     if at.complete:
         notes.append(f"Arithmetic sum of the magnitudes: {say(at.arithmetic_sum, q.unit, digits)}.")

@@ -18,6 +18,7 @@ from equiv.analyses.superposition.subcircuits import (
 from equiv.analyses.superposition.terms import ControlledState, Term
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
+from equiv.equations.scalars import scalar
 from equiv.equations.solution import Solver, State
 from equiv.network import Network
 
@@ -38,7 +39,8 @@ class TermMaker:
 
     def all_on(self, state: State) -> complex:
         """The quantity with all sources on."""
-        return self._cleaned(state.of(self.quantity), -1) or 0.0
+        found = self._cleaned(state.of(self.quantity), -1)
+        return 0.0 if found is None else found
 
     def terms(
         self,
@@ -61,18 +63,19 @@ class TermMaker:
     def numbers(self, plans: Sequence[Plan]) -> list[complex]:
         """The contribution of each plan, whether it exists or not."""
         values = (self.contribution(plan, None) for plan in plans)
-        return [self._cleaned(value, k) or 0j for k, value in enumerate(values)]
+        found = (self._cleaned(value, k) for k, value in enumerate(values))
+        return [0j if value is None else value for value in found]
 
     def _cleaned(self, value: complex | None, number: int) -> complex | None:
         if value is None or self.rounding is None:
             return value
-        return 0j if abs(value) <= self.rounding[number] else value
+        return 0j if 0 < abs(value) <= self.rounding[number] else value
 
     def contribution(self, plan: Plan, reason: str | None) -> complex | None:
         """coefficient × value, summed over the members."""
         if reason is not None:
             return None
-        return complex(self.coefficients[plan.numbers] @ self.solver.u[plan.numbers])
+        return scalar(self.coefficients[plan.numbers] @ self.solver.u[plan.numbers])
 
     def term(
         self,
@@ -111,7 +114,7 @@ class TermMaker:
     ) -> Term:
         source, k = self.solver.network.elements[name], self.solver.layout.source_number[name]
         unit = "V" if source.output == "V" else "A"
-        h, u = complex(self.coefficients[k]), complex(self.solver.u[k])
+        h, u = scalar(self.coefficients[k]), scalar(self.solver.u[k])
         exists = reason is None
         return Term(
             source=name, kind=source.kind, members=(name,), value=u, unit=unit,

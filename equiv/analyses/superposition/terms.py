@@ -11,6 +11,8 @@ from typing import Any
 from equiv.analyses.result import pair
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
+from equiv.equations.scalars import is_exact, scalar, zero_like
+from equiv.network import Network
 
 CLOSURE_LIMIT = 1e-9
 """How far the sum may be from all sources at once, relative to Σ|term|."""
@@ -19,6 +21,11 @@ TERM_LIMIT = 1e-9
 FLOOR = 1e-3
 """A smaller term is judged against this part of Σ|term|."""
 NOTABLE_CANCELLATION = 10.0
+
+
+def limit_of(network: Network, limit: float = CLOSURE_LIMIT) -> float:
+    """A limit of differences: nothing at all where the numbers are exact."""
+    return 0.0 if network.exact else limit
 
 
 @dataclass(frozen=True)
@@ -87,7 +94,7 @@ class Term:
     @property
     def number(self) -> complex:
         """The contribution, 0 where there is none."""
-        return self.contribution or 0.0
+        return 0.0 if self.contribution is None else self.contribution
 
 
 @dataclass(frozen=True)
@@ -115,12 +122,13 @@ class Power:
     @property
     def own_sum(self) -> complex:
         """The sum of the own powers."""
-        return sum((p for p in self.own if p is not None), 0j)
+        return sum((p for p in self.own if p is not None), zero_like(self.all_on))
 
     @property
     def cross_sum(self) -> complex:
         """The sum of the cross terms."""
-        return sum((c for row in self.cross for c in row if c is not None), 0j)
+        found = (c for row in self.cross for c in row if c is not None)
+        return sum(found, zero_like(self.all_on))
 
     @property
     def total(self) -> complex:
@@ -157,7 +165,9 @@ class FrequencyTerms:
         """The sum of the terms; all sources at once where a term does not exist."""
         if self.power:
             return self.power.total
-        return sum((t.number for t in self.terms), 0j) if self.complete else self.all_on
+        if not self.complete:
+            return self.all_on
+        return sum((t.number for t in self.terms), zero_like(self.all_on))
 
     @cached_property
     def arithmetic_sum(self) -> float:
@@ -183,6 +193,8 @@ class FrequencyTerms:
     @cached_property
     def cancels_to_nothing(self) -> bool:
         """Whether the total is below the closure limit: its shares mean nothing."""
+        if is_exact(self.total):
+            return not self.total
         return abs(self.total) <= CLOSURE_LIMIT * self.arithmetic_sum
 
     @cached_property
@@ -199,7 +211,7 @@ class FrequencyTerms:
         """The in-phase share: Re(term · total*) / |total|²."""
         if term.contribution is None or self.cancels_to_nothing or not self.complete:
             return None
-        total = complex(self.total)
+        total = scalar(self.total)
         return (term.contribution * total.conjugate()).real / abs(total) ** 2
 
     def gross_share(self, term: Term) -> float | None:
@@ -220,7 +232,7 @@ class FrequencyTerms:
         """The sum up to each term; None where a term does not exist."""
         if not self.complete:
             return (None,) * len(self.terms)
-        return tuple(accumulate(complex(t.number) for t in self.terms))
+        return tuple(accumulate(scalar(t.number) for t in self.terms))
 
     @cached_property
     def worst_term(self) -> float | None:
