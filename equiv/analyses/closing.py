@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
+from equiv.analyses import exactness
 from equiv.analyses.result import Caution, Check
 from equiv.analyses.tables import Table
 from equiv.network import Network
@@ -19,6 +20,7 @@ def closing_table(
     notes = [
         *(check.sentence() for check in checks),
         *remarks,
+        *exactness.remarks(network),
         *(f"Caution: {caution.message}" for caution in cautions),
         *([f"Sources. {'; '.join(labels[:_MOST_LABELS])}."] if labels else []),
         *(f"Note: {note}" for note in network.notes),

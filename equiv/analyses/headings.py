@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from equiv.analyses.superposition.terms import FrequencyTerms, QuantityTerms
 from equiv.elements.element import Frequency
-from equiv.network import Network
+from equiv.elements.quantity import Quantity
+from equiv.network import Network, NodePair
 from equiv.units import write_value
 
 
@@ -33,3 +34,13 @@ def titles_of(
 def name_of(q: QuantityTerms, at: FrequencyTerms) -> str:
     """What tells this table from the others of the result."""
     return f"{q.quantity}{at_words(at.frequency)}"
+
+
+def positive_words(network: Network, quantity: Quantity) -> str:
+    """The reference direction of a quantity: `a over b`, `from a to b inside R1`."""
+    place = network.locate(quantity)
+    if isinstance(place, NodePair):
+        return f"{place.first} over {place.second}"
+    first, second = network.pair_nodes(place)
+    words = {"V": f"{first} over {second}", "P": "absorbed"}
+    return words.get(quantity.what, f"from {first} to {second} inside {place.element}")

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from typing import Any, ClassVar, NamedTuple
+from typing import TYPE_CHECKING, Any, ClassVar, NamedTuple, overload
 
 from equiv.analyses.cautions import about_network, interpolated
 from equiv.analyses.closing import closing_table
+from equiv.analyses.exactness import exactly
+from equiv.analyses.formulas.kinds import require_plain
 from equiv.analyses.headings import at_words
 from equiv.analyses.ports.choice import chosen_ports
 from equiv.analyses.ports.choice import find_port as find_port
@@ -21,11 +23,14 @@ from equiv.analyses.ports.references import Ohms, checked_form, references_of
 from equiv.analyses.ports.tables import port_data, port_tables
 from equiv.analyses.ports.touchstone import touchstone_sources, touchstone_text
 from equiv.analyses.result import Caution, Check, Result
-from equiv.analyses.superposition.terms import CLOSURE_LIMIT
+from equiv.analyses.superposition.terms import limit_of
 from equiv.analyses.tables import Table
 from equiv.elements.element import Frequency
 from equiv.errors import Diagnostic, DoesNotExistError, ExitStatus
 from equiv.network import Network, Port, Progress, no_progress
+
+if TYPE_CHECKING:
+    from equiv.analyses.formulas.ported import FormulaPort
 
 _UNPROVED = Caution(
     "unproved",
@@ -86,14 +91,46 @@ class PortEquivalent(Result):
         return touchstone_sources(self.network, self.equivalents, self.forms)
 
 
+@overload
 def port(
     network: Network,
     *ports: str | Port,
     form: str | None = None,
     reference: Ohms | Sequence[Ohms] = 50,
     at: Sequence[Given] = (),
+    exact: bool = False,
+    symbolic: None = None,
     progress: Progress = no_progress,
-) -> PortEquivalent:
+) -> PortEquivalent: ...
+
+
+@overload
+def port(
+    network: Network,
+    *ports: str | Port,
+    form: str | None = None,
+    reference: Ohms | Sequence[Ohms] = 50,
+    at: Sequence[Given] = (),
+    exact: bool = False,
+    symbolic: bool | str | Sequence[str] | None = None,
+    expand: bool = False,
+    fails_for: str | None = None,
+    progress: Progress = no_progress,
+) -> PortEquivalent | FormulaPort: ...
+
+
+def port(
+    network: Network,
+    *ports: str | Port,
+    form: str | None = None,
+    reference: Ohms | Sequence[Ohms] = 50,
+    at: Sequence[Given] = (),
+    exact: bool = False,
+    symbolic: bool | str | Sequence[str] | None = None,
+    expand: bool = False,
+    fails_for: str | None = None,
+    progress: Progress = no_progress,
+) -> PortEquivalent | FormulaPort:
     """The Thevenin and Norton equivalents of one port, or the coupled ones of several.
 
     1 A into each open port, the independent sources off, gives the columns of Z in
@@ -103,16 +140,23 @@ def port(
 
     Arguments: ports by their names or as `a,b` (all declared ports if none are given);
     `reference` (ohm) of s, one or one a port; `at` frequencies (hertz, or text such as `1 MHz`)
-    in place of those of the sources.
+    in place of those of the sources; `exact` for rational arithmetic; `symbolic` for formulas in
+    the elements' names (True: all; else the named ones) and in s, `expand` written out whatever
+    their length, with the value of `fails_for` at which there is no Thevenin equivalent.
     Errors: UsageError for an unknown port or form; NoUniqueSolutionError; DoesNotExistError where
-    the form does not exist.
+    the form does not exist; UsageError where an exact result would need an irrational value.
     Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load; the currents
     of the parameters flow into the ports, as textbooks have them.
     Source: L. Thevenin, 1883; E. L. Norton, 1926; test sources: common practice.
     """
+    if symbolic is not None and symbolic is not False:
+        require_plain(form=bool(form), at=bool(at), exact=exact)
+        wanted = (symbolic, expand, fails_for)
+        return _in_symbols(network, chosen_ports(network, ports), wanted)
+    network = exactly(network, exact)
     chosen = chosen_ports(network, ports)
     checked_form(form, len(chosen))
-    references = references_of(reference, len(chosen))
+    references = references_of(reference, len(chosen), exact=form == "s" and network.exact)
     frequencies = frequencies_of(at) or _own_frequencies(network)
     points: list[_Point] = []
     for number, frequency in enumerate(frequencies):
@@ -123,6 +167,17 @@ def port(
     if at:  # nothing is taken at the file's own frequency
         general = [c for c in general if c not in interpolated(network)]
     return _put_together(network, points, general)
+
+
+def _in_symbols(
+    network: Network,
+    ports: tuple[Port, ...],
+    wanted: tuple[bool | str | Sequence[str], bool, str | None],
+) -> FormulaPort:
+    from equiv.analyses.formulas.ported import ported
+    from equiv.analyses.formulas.wanted import Wanted
+
+    return ported(network, ports, _own_frequencies(network), Wanted(*wanted))
 
 
 def _own_frequencies(network: Network) -> tuple[Frequency, ...]:
@@ -200,22 +255,23 @@ def _form_checks(network: Network, e: Equivalent, form: PortForm) -> list[Check]
     return (
         []
         if off is None
-        else [Check(f"parameters {form.form} under loads{where}", off, CLOSURE_LIMIT)]
+        else [Check(f"parameters {form.form} under loads{where}", off, limit_of(network))]
     )
 
 
 def _checks(network: Network, e: Equivalent) -> list[Check]:
+    limit = limit_of(network)
     where = at_words(e.frequency)
     checks = []
     if e.thevenin and e.norton:
-        checks.append(Check(f"Norton against Thevenin{where}", e.disagreement, CLOSURE_LIMIT))
+        checks.append(Check(f"Norton against Thevenin{where}", e.disagreement, limit))
     if e.thevenin or e.norton:
         off = three_loads(network, e)
         if off is not None:
-            checks.append(Check(f"three loads{where}", off, CLOSURE_LIMIT))
+            checks.append(Check(f"three loads{where}", off, limit))
     off = blackman(network, e)
     if off is not None:
-        checks.append(Check(f"Blackman's formula{where}", off, CLOSURE_LIMIT))
+        checks.append(Check(f"Blackman's formula{where}", off, limit))
     return checks
 
 

@@ -4,27 +4,32 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Any, ClassVar, Literal
+from typing import TYPE_CHECKING, Any, ClassVar, Literal, overload
 
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
-from equiv.analyses.headings import at_words
+from equiv.analyses.exactness import exactly
+from equiv.analyses.formulas.kinds import require_plain
+from equiv.analyses.headings import at_words, positive_words
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.superposition.data import quantity_data
 from equiv.analyses.superposition.finder import TermFinder
 from equiv.analyses.superposition.tables import askable, askable_tables, quantity_tables
 from equiv.analyses.superposition.terms import (
-    CLOSURE_LIMIT,
     NOTABLE_CANCELLATION,
     TERM_LIMIT,
     FrequencyTerms,
     QuantityTerms,
+    limit_of,
 )
 from equiv.analyses.tables import Table
 from equiv.elements.quantity import Quantity
 from equiv.errors import Diagnostic, ExitStatus, NoUniqueSolutionError
 from equiv.language import quantity as read_quantity
-from equiv.network import Find, Network, NodePair, Progress, no_progress
+from equiv.network import Find, Network, Progress, no_progress
+
+if TYPE_CHECKING:
+    from equiv.analyses.formulas.superposed import FormulaSuperposition
 
 Checking = Literal["auto", "all", "none"]
 
@@ -60,6 +65,7 @@ class Superposition(Result):
         return data
 
 
+@overload
 def superpose(
     network: Network,
     *quantities: str | Quantity,
@@ -67,8 +73,43 @@ def superpose(
     detail: bool = False,
     paths: bool = False,
     check: Checking = "auto",
+    exact: bool = False,
+    symbolic: None = None,
     progress: Progress = no_progress,
-) -> Superposition:
+) -> Superposition: ...
+
+
+@overload
+def superpose(
+    network: Network,
+    *quantities: str | Quantity,
+    by: Literal["source", "group"] = "source",
+    detail: bool = False,
+    paths: bool = False,
+    check: Checking = "auto",
+    exact: bool = False,
+    symbolic: bool | str | Sequence[str] | None = None,
+    expand: bool = False,
+    fails_for: str | None = None,
+    derivative: str | None = None,
+    progress: Progress = no_progress,
+) -> Superposition | FormulaSuperposition: ...
+
+
+def superpose(
+    network: Network,
+    *quantities: str | Quantity,
+    by: Literal["source", "group"] = "source",
+    detail: bool = False,
+    paths: bool = False,
+    check: Checking = "auto",
+    exact: bool = False,
+    symbolic: bool | str | Sequence[str] | None = None,
+    expand: bool = False,
+    fails_for: str | None = None,
+    derivative: str | None = None,
+    progress: Progress = no_progress,
+) -> Superposition | FormulaSuperposition:
     """What each independent source gives to each quantity, with its sign, and the proof.
 
     h_qk = C_q A⁻¹ B_k + D_qk, contribution h_qk·u_k, their sum the quantity; every controlled
@@ -77,12 +118,22 @@ def superpose(
     Arguments: quantities as `I:R3` (the network's `find` statements if none are given); `by`
     "group" makes groups terms with their members below; `detail` keeps each sub-circuit's
     controlled sources for printing; `paths` splits terms by controlled source; `check` tells
-    which terms are found again by the second method; `progress` is told of long work.
-    Errors: NoUniqueSolutionError, UsageError.
+    which terms are found again by the second method; `exact` makes all of it rational, and the
+    differences 0; `symbolic` gives formulas in the elements' names (True: all; else the named
+    ones) and in s, `expand` written out whatever their length, with the value of `fails_for` at
+    which there is no solution and the derivative with respect to `derivative`; `progress` is
+    told of long work.
+    Errors: NoUniqueSolutionError; UsageError, also where an exact result would need an irrational
+    value.
     Sign convention: as the quantity says (`positive`); powers are absorbed.
     Source: superposition with dependent sources: W. M. Leach, On the application of superposition
     to dependent sources in circuit analysis (2009, from memory); C. W. Ho et al. (1975).
     """
+    if symbolic is not None and symbolic is not False:
+        require_plain(detail=detail, paths=paths, exact=exact)
+        wanted = (symbolic, expand, fails_for, derivative)
+        return _in_symbols(network, quantities, wanted, by, check, progress)
+    network = exactly(network, exact)
     finds = _finds(network, quantities)
     if not finds:
         return Superposition(network)
@@ -103,7 +154,7 @@ def superpose(
     if not refusal and any(not f.complete for q in found for f in q.frequencies):
         refusal = ExitStatus.DOES_NOT_EXIST
     cautions += [c for q in found for f in q.frequencies for c in _cancellation(q, f)]
-    checks = [c for q in found for f in q.frequencies for c in _checks(q, f)]
+    checks = [c for q in found for f in q.frequencies for c in _checks(network, q, f)]
     return Superposition(
         network,
         checks=(*checks, *work.checks),
@@ -115,6 +166,31 @@ def superpose(
     )
 
 
+def _in_symbols(
+    network: Network,
+    quantities: Sequence[str | Quantity],
+    wanted: tuple[bool | str | Sequence[str], bool, str | None, str | None],
+    by: Literal["source", "group"],
+    check: Checking,
+    progress: Progress,
+) -> Superposition | FormulaSuperposition:
+    """The formulas of what was asked for, and their numbers by the way of this module."""
+    from equiv.analyses.formulas.superposed import superposed
+    from equiv.analyses.formulas.wanted import Wanted
+
+    finds = _finds(network, quantities)
+    if not quantities:
+        finds = tuple(find for find in finds if find.quantity.what != "P") or finds
+    if not finds:
+        return Superposition(network)
+
+    def numeric() -> tuple[QuantityTerms, ...]:
+        asked = [find.quantity for find in finds]
+        return superpose(network, *asked, by=by, check=check, progress=progress).quantities
+
+    return superposed(network, finds, Wanted(*wanted), by, numeric)
+
+
 def _finds(network: Network, quantities: Sequence[str | Quantity]) -> tuple[Find, ...]:
     if not quantities:
         return network.finds
@@ -124,27 +200,22 @@ def _finds(network: Network, quantities: Sequence[str | Quantity]) -> tuple[Find
 
 
 def _quantity(network: Network, find: Find, terms: Sequence[FrequencyTerms]) -> QuantityTerms:
-    place, q = network.locate(find.quantity), find.quantity
-    if isinstance(place, NodePair):
-        positive = f"{place.first} over {place.second}"
-    else:
-        first, second = network.pair_nodes(place)
-        words = {"V": f"{first} over {second}", "P": "absorbed"}
-        positive = words.get(q.what, f"from {first} to {second} inside {place.element}")
+    q = find.quantity
+    positive = positive_words(network, q)
     return QuantityTerms(q, find.label, q.unit, network.describe(q), positive, tuple(terms))
 
 
-def _checks(q: QuantityTerms, at: FrequencyTerms) -> list[Check]:
+def _checks(network: Network, q: QuantityTerms, at: FrequencyTerms) -> list[Check]:
     if at.refusal:
         return []
     name = f"{q.quantity}{at_words(at.frequency)}"
     checks = []
     if at.complete:
-        checks.append(
-            Check(f"sum against all sources at once, {name}", at.difference, CLOSURE_LIMIT)
-        )
+        words = f"sum against all sources at once, {name}"
+        checks.append(Check(words, at.difference, limit_of(network)))
     if at.worst_term is not None:
-        checks.append(Check(f"terms against sub-circuits, {name}", at.worst_term, TERM_LIMIT))
+        words = f"terms against sub-circuits, {name}"
+        checks.append(Check(words, at.worst_term, limit_of(network, TERM_LIMIT)))
     return checks
 
 

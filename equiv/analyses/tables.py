@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import NamedTuple
 
@@ -14,7 +14,47 @@ class Measure(NamedTuple):
     unit: str
 
 
-Cell = str | int | float | complex | Measure | None
+LONGEST_SHOWN = 24
+"""Characters of an exact number beyond which it is not drawn in tables for people."""
+
+
+class Fractions(NamedTuple):
+    """An exact number: the real part as text, and the imaginary one where it is not zero."""
+
+    re: str
+    im: str = ""
+    unit: str = ""
+    """Its SI unit, where the rows of its column have different ones."""
+
+    @property
+    def text(self) -> str:
+        """`60/11`, or `3/5 - j4/5`."""
+        if not self.im:
+            return self.re
+        sign, size = ("-", self.im[1:]) if self.im[0] == "-" else ("+", self.im)
+        return f"{self.re} {sign} j{size}" if self.re != "0" else f"{sign.strip('+')}j{size}"
+
+    @property
+    def long(self) -> bool:
+        """Whether one of its parts is too long to be shown."""
+        return max(len(self.re), len(self.im)) > LONGEST_SHOWN
+
+
+class FormulaText(str):
+    """A formula: a text like others, and what it is in LaTeX's math mode."""
+
+    __slots__ = ("latex",)
+
+    def __new__(cls, text: str, latex: Callable[[], str]) -> FormulaText:
+        """The text, and what makes the LaTeX when it is needed."""
+        made = super().__new__(cls, text)
+        made.latex = latex
+        return made
+
+    latex: Callable[[], str]
+
+
+Cell = str | int | float | complex | Measure | Fractions | None
 """None is a value that does not exist; an int is a count; floats are drawn with the column's unit."""
 
 

@@ -1,0 +1,1 @@
+"""What formulas are as results: which symbols, which terms, what is told of them."""
