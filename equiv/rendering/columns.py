@@ -6,7 +6,7 @@ import cmath
 from collections.abc import Sequence
 from typing import NamedTuple, cast
 
-from equiv.analyses.tables import Cell, Column, Measure, Table
+from equiv.analyses.tables import Cell, Column, Fractions, Measure, Table
 from equiv.rendering.marks import Marks
 from equiv.rendering.numbers import (
     Scale,
@@ -67,7 +67,7 @@ def _finite(cells: Cells) -> Cells:
 
 def _number(cell: Cell) -> complex | None:
     """The number in a cell, if there is one."""
-    if cell is None or isinstance(cell, str):
+    if cell is None or isinstance(cell, str | Fractions):
         return None
     return cell.number if isinstance(cell, Measure) else cell
 
@@ -120,13 +120,17 @@ def _drawn(column: Column, cells: Cells, style: _Style) -> Drawn:
     if style.scale.dust:
         cells = [_dusted(c, style.scale.dust) for c in cells]
     kinds = set(map(type, cells))
+    exact = Fractions in kinds
+    if exact:
+        cells = [_spelt(c, style.marks) if isinstance(c, Fractions) else c for c in cells]
+        kinds = set(map(type, cells))
     if kinds == {str}:
         texts = list(map(style.marks.text, cast(Sequence[str], cells)))
         return Drawn(name, unit, column.key, column.repeat, False, texts)
     if kinds == {float} and not style.polar:
         texts = column_texts(cast(Sequence[float], cells), style.scale)
         return Drawn(name, unit, column.key, column.repeat, True, texts)
-    numerals = [c for c in cells if c is not None and not isinstance(c, str)]
+    numerals = [c for c in cells if c is not None and not isinstance(c, str | Fractions)]
     figures = iter(_figures(column, numerals, style))
     texts = [
         style.marks.missing
@@ -136,8 +140,15 @@ def _drawn(column: Column, cells: Cells, style: _Style) -> Drawn:
         else next(figures)
         for c in cells
     ]
-    right = bool(numerals) or bool(column.unit) or column.exponent
+    right = bool(numerals) or (bool(column.unit) and not exact) or column.exponent
     return Drawn(name, unit, column.key, column.repeat, right, texts)
+
+
+def _spelt(number: Fractions, marks: Marks) -> str:
+    """An exact number in a table for people."""
+    if number.long:
+        return marks.cut
+    return f"{number.text} {marks.unit('', number.unit)}".rstrip()
 
 
 def _dusted(cell: Cell, dust: float) -> Cell:

@@ -1,7 +1,8 @@
 """Tables as CSV (RFC 4180) for programs: SI base units, full double precision, no prefixes.
 
 A heading bears its unit in brackets. A complex column is two, `_re` and `_im`; a column whose
-rows have units of their own is followed by a column of units; percentages are fractions. Where
+rows have units of their own is followed by a column of units; percentages are fractions, and
+exact numbers stand whole as `60/11` (two columns where one of them is complex). Where
 a table has members or totals, a last column `row` says what each row is, so that sums are easy.
 Several tables are each preceded by a blank line, and the first column says which one it is.
 """
@@ -12,7 +13,7 @@ import csv
 import io
 from collections.abc import Iterator, Sequence
 
-from equiv.analyses.tables import Cell, Column, Measure, Row, Table
+from equiv.analyses.tables import Cell, Column, Fractions, Measure, Row, Table
 from equiv.errors import printable
 from equiv.rendering.columns import Cells, cells_of, polar_columns
 
@@ -66,7 +67,9 @@ def _column(column: Column, cells: Cells, polar: bool) -> Iterator[list[str]]:
     unit = "" if column.unit == "%" or measured else column.unit
     bracket = f" [{printable(unit)}]" if unit else ""
     name = harmless(column.name)
-    if polar:
+    if any(isinstance(cell, Fractions) for cell in cells):
+        yield from _exact(f"{name}", bracket, cells)
+    elif polar:
         yield [f"{name}_re{bracket}", *(_cell(cell, "real") for cell in cells)]
         yield [f"{name}_im{bracket}", *(_cell(cell, "imag") for cell in cells)]
     else:
@@ -74,6 +77,18 @@ def _column(column: Column, cells: Cells, polar: bool) -> Iterator[list[str]]:
     if measured:
         units = [_unit(cell, column.unit) for cell in cells]
         yield [f"{name} unit", *map(harmless, units)]
+
+
+def _exact(name: str, bracket: str, cells: Cells) -> Iterator[list[str]]:
+    """Exact numbers whole: digits, a minus and a slash, in which no formula can hide."""
+    exact = [cell if isinstance(cell, Fractions) else None for cell in cells]
+    if any(number and number.im for number in exact):
+        yield [f"{name}_re{bracket}", *(number.re if number else "" for number in exact)]
+        yield [f"{name}_im{bracket}", *((number.im or "0") if number else "" for number in exact)]
+    else:
+        yield [f"{name}{bracket}", *(number.re if number else "" for number in exact)]
+    if any(number and number.unit for number in exact):
+        yield [f"{name} unit", *(harmless(number.unit) if number else "" for number in exact)]
 
 
 def _unit(cell: Cell, unit: str) -> str:
@@ -86,7 +101,7 @@ def _cell(cell: Cell, part: str = "") -> str:
     """A cell at full precision; a text in a complex column stands with the real parts."""
     if isinstance(cell, Measure):
         cell = cell.number
-    if cell is None:
+    if cell is None or isinstance(cell, Fractions):
         return ""
     if isinstance(cell, str):
         return harmless(cell) if part != "imag" else ""

@@ -6,7 +6,7 @@ import re
 import unicodedata
 from collections.abc import Iterator, Sequence
 
-from equiv.analyses.tables import Cell, Row, Table
+from equiv.analyses.tables import Cell, FormulaText, Fractions, Row, Table
 from equiv.errors import printable
 from equiv.rendering.columns import Drawn, drawn_columns
 from equiv.rendering.marks import UNICODE
@@ -145,7 +145,11 @@ def _tabular(columns: Sequence[Drawn], rows: Sequence[Row]) -> Iterator[str]:
 
 def _cell(cell: Cell, text: str) -> str:
     """A text or a number; blanks behind a number stand for digits that it does not have."""
-    if cell is None or isinstance(cell, str):
+    if isinstance(cell, FormulaText):
+        return f"${cell.latex()}$"
+    if isinstance(cell, Fractions) and not cell.long:
+        return f"${cell.text}$" + (rf"\,{figure(UNICODE.unit('', cell.unit))}" if cell.unit else "")
+    if cell is None or isinstance(cell, str | Fractions):
         return literal(text.strip())
     number = text.rstrip()
     missing = "0" * (len(text) - len(number))

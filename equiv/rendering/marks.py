@@ -18,6 +18,8 @@ class Marks(NamedTuple):
     rule: str
     ohm: str
     micro: str
+    cut: str
+    """In the place of what is too long."""
 
     def unit(self, prefix: str, unit: str) -> str:
         """A unit with its prefix: `mA`, `kΩ`."""
@@ -33,5 +35,5 @@ class Marks(NamedTuple):
         return safe
 
 
-UNICODE = Marks(angle="∠", degree="°", missing="–", rule="─", ohm="Ω", micro="µ")
-PLAIN = Marks(angle="@", degree=" deg", missing="-", rule="-", ohm="ohm", micro="u")
+UNICODE = Marks(angle="∠", degree="°", missing="–", rule="─", ohm="Ω", micro="µ", cut="…")
+PLAIN = Marks(angle="@", degree=" deg", missing="-", rule="-", ohm="ohm", micro="u", cut="...")
