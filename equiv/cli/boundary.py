@@ -12,6 +12,7 @@ import typer
 from equiv.cli import load_command, loadtest_command, match_command, sweep_command  # noqa: F401
 from equiv.cli.commands import app
 from equiv.cli.environment import Environment, silence
+from equiv.cli.formula_options import with_values
 from equiv.cli.options import Request
 from equiv.cli.progress import ProgressBar
 from equiv.cli.run import Run
@@ -43,7 +44,10 @@ def _read(words: Sequence[str]) -> Request | int | None:
     try:
         command = typer.main.get_command(app)
         asked: Request | int | None = command.main(
-            list(words), prog_name="equiv", standalone_mode=False, windows_expand_args=False
+            list(with_values(words)),
+            prog_name="equiv",
+            standalone_mode=False,
+            windows_expand_args=False,
         )
     except _WrongWords as error:
         raise _usage_error(error) from None

@@ -8,8 +8,9 @@ import typer
 
 import equiv
 from equiv.cli import completion, port_files
+from equiv.cli import formula_options as formulas
 from equiv.cli import port_options as options
-from equiv.cli.options import shared
+from equiv.cli.options import Exactly, shared
 from equiv.cli.run import Run
 
 if TYPE_CHECKING:
@@ -89,14 +90,15 @@ def check(run: Run, file: File) -> Result:
 
 @app.command()
 @shared
-def solve(run: Run, file: File) -> Result:
+def solve(run: Run, file: File, exact: Exactly = False) -> Result:
     """Everything at once: voltages, currents, powers, their balance.
 
     \b
-    Example:
+    Examples:
       equiv solve supply.equiv --as csv --output supply.csv
+      equiv solve supply.equiv --exact
     """
-    return equiv.solve(run.network(file), progress=run.progress)
+    return equiv.solve(run.network(file), exact=exact, progress=run.progress)
 
 
 @app.command()
@@ -118,16 +120,26 @@ def superpose(
         Literal["auto", "all", "none"],
         typer.Option(help="Which terms are found again by a second method."),
     ] = "auto",
+    exact: Exactly = False,
+    symbolic: formulas.Symbolic = None,
+    expand: formulas.Expand = False,
+    fails_for: formulas.FailsFor = None,
+    derivative: formulas.Derivative = None,
 ) -> Result:
     """Term by term: what each source gives to each quantity.
 
     Every controlled source stays in place in every term; each term is proved by a second
     method, and the sum by the network with all sources on.
 
+    --symbolic gives formulas, in all elements' names or in those behind it; without names it
+    stands last, or before an option, a quantity or a file.
+
     \b
     Examples:
       equiv superpose supply.equiv I:R3
       equiv superpose supply.equiv V:bus,gnd --detail --by group
+      equiv superpose supply.equiv --exact
+      equiv superpose supply.equiv I:R3 --symbolic R1,R3
     """
     return equiv.superpose(
         run.network(file),
@@ -136,6 +148,11 @@ def superpose(
         detail=detail,
         paths=paths,
         check=check,
+        exact=exact,
+        symbolic=symbolic,
+        expand=expand,
+        fails_for=fails_for,
+        derivative=derivative,
         progress=run.progress,
     )
 
@@ -180,6 +197,10 @@ def port(
     points: options.Points = 11,
     log: options.Log = False,
     touchstone: options.TouchstoneFile = None,
+    exact: Exactly = False,
+    symbolic: formulas.Symbolic = None,
+    expand: formulas.Expand = False,
+    fails_for: formulas.FailsFor = None,
 ) -> Result:
     """Equivalents or parameters of one port or several.
 
@@ -192,16 +213,27 @@ def port(
     Examples:
       equiv port supply.equiv PANEL
       equiv port supply.equiv bus,gnd pump,gnd --json
+      equiv port supply.equiv PANEL --symbolic
       equiv port filter.equiv IN OUT --form s --reference 50ohm --at 1MHz
       equiv port filter.equiv IN OUT --from 1MHz --to 9MHz --touchstone filter.s2p
     """
     files = port_files.of(run, touchstone)
+    network = run.network(file)
+    symbolic, named = formulas.names_and_ports(network, symbolic, ports)
+    form = form or ("s" if touchstone else None)
+    frequencies = port_files.frequencies(at or (), from_, to, points, log)
+    if symbolic is not None:
+        return equiv.port(
+            network, *named, form=form, at=frequencies, exact=exact,
+            symbolic=symbolic, expand=expand, fails_for=fails_for,
+        )  # fmt: skip
     result = equiv.port(
-        run.network(file),
-        *(ports or ()),
-        form=form or ("s" if touchstone else None),
+        network,
+        *named,
+        form=form,
         reference=reference or 50,
-        at=port_files.frequencies(at or (), from_, to, points, log),
+        at=frequencies,
+        exact=exact,
         progress=run.progress,
     )
     files.write(result)

@@ -9,7 +9,7 @@ import typer
 import equiv
 from equiv.cli import completion
 from equiv.cli.commands import File, app
-from equiv.cli.options import shared
+from equiv.cli.options import Exactly, shared
 from equiv.cli.run import Run
 
 if TYPE_CHECKING:
@@ -38,6 +38,7 @@ def load(
             help="8 ohm, 4+3j ohm, short, open, current 2 A, power 50 W, or curve.csv.",
         ),
     ],
+    exact: Exactly = False,
 ) -> Result:
     """What a port does under given loads, proved in the full network.
 
@@ -61,4 +62,4 @@ def load(
         equiv.load_curve(*run.text(word)) if word.lower().endswith(".csv") else word
         for word in values
     ]
-    return equiv.load_port(run.network(file), port, *loads, progress=run.progress)
+    return equiv.load_port(run.network(file), port, *loads, exact=exact, progress=run.progress)

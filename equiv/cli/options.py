@@ -17,6 +17,10 @@ if TYPE_CHECKING:
     from equiv.analyses.result import Result
 
 Form = Literal["table", "json", "csv", "markdown", "latex"]
+Exactly = Annotated[
+    bool,
+    typer.Option("--exact", help="Rational arithmetic: fractions beside decimals, checks are 0."),
+]
 
 
 @dataclass(frozen=True)
