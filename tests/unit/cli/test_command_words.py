@@ -30,7 +30,17 @@ def test_superpose_passes_its_words_on(library: Library):
     assert quantities == ["I:R3", "V:a,b"]
     progress = options.pop("progress")
     assert callable(progress)
-    assert options == {"by": "group", "detail": True, "paths": True, "check": "all"}
+    assert options == {
+        "by": "group",
+        "detail": True,
+        "paths": True,
+        "check": "all",
+        "exact": False,
+        "symbolic": None,
+        "derivative": None,
+        "expand": False,
+        "fails_for": None,
+    }
     assert library.calls["load"] == (("f.equiv",), {"given": {}, "frequency": None})
 
 

@@ -156,7 +156,7 @@ def test_nobody_reads_the_messages(library: Library):
 def working(words: list[str], library: Library, monkeypatch: pytest.MonkeyPatch, **about) -> str:
     """What is told while a long work goes on."""
 
-    def solve(network, progress):
+    def solve(network, exact, progress):
         for done in range(4):
             progress("solving [red]\x1b[31m", done, 4)
         return library.answer
