@@ -9,16 +9,23 @@ import numpy as np
 
 from equiv.threephase.cases import FaultCase, FaultTerm, Phases
 from equiv.threephase.cases import Sequence as SequenceValues
-from equiv.threephase.connection import EARTH_FAULTS, term_weights
-from equiv.threephase.faulted import CANCELLED, AtBus, Fault, Faulted, per_volt, scaled_fault
+from equiv.threephase.coordinates.phase_coordinates import PhaseCoordinates
 from equiv.threephase.grouping import Groups
 from equiv.threephase.model import Shunt
-from equiv.threephase.networks import elements_of
-from equiv.threephase.phase_coordinates import PhaseCoordinates
 from equiv.threephase.proof import Apart, apart, three_phase
 from equiv.threephase.relays import RelayFinder
-from equiv.threephase.sequences import ToEarth, amperes_of, there
-from equiv.threephase.solve import SystemSolution
+from equiv.threephase.sequence.connection import EARTH_FAULTS, term_weights
+from equiv.threephase.sequence.faulted import (
+    CANCELLED,
+    AtBus,
+    Fault,
+    Faulted,
+    per_volt,
+    scaled_fault,
+)
+from equiv.threephase.sequence.networks import elements_of
+from equiv.threephase.sequence.sequences import ToEarth, amperes_of, there
+from equiv.threephase.sequence.solve import SystemSolution
 from equiv.threephase.standard import asymmetry_factor, peak_factor
 
 NO_RESISTANCE = 1e-12

@@ -11,9 +11,9 @@ from equiv.analyses.check import check as check_network
 from equiv.analyses.result import Result
 from equiv.analyses.tables import Column, Table
 from equiv.network import Network
-from equiv.threephase.findings import doubts
 from equiv.threephase.kinds import KINDS
 from equiv.threephase.model import OneLine, Shunt
+from equiv.threephase.sequence.findings import doubts
 from equiv.threephase.words import level_words
 
 

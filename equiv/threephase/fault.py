@@ -13,11 +13,11 @@ from equiv.network import Network, Progress, no_progress
 from equiv.threephase.asked import Ohms, impedance_of
 from equiv.threephase.cases import TYPES, FaultCase
 from equiv.threephase.fault_cautions import cautions_of
-from equiv.threephase.faulted import Fault
 from equiv.threephase.loading import require_system
 from equiv.threephase.model import OneLine, View
 from equiv.threephase.relays import places
-from equiv.threephase.survey_tables import Survey
+from equiv.threephase.sequence.faulted import Fault
+from equiv.threephase.showing.survey_tables import Survey
 from equiv.threephase.work import Asked, Work
 
 
@@ -42,19 +42,19 @@ class FaultResult(Result):
 
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """Each fault in full where buses were named; else a table a type over all buses."""
-        from equiv.threephase.report import fault_tables
+        from equiv.threephase.showing.report import fault_tables
 
         return fault_tables(self, digits)
 
     def records(self, digits: int = 5) -> tuple[Table, ...]:
         """A row a term, a row a fault, and so on."""
-        from equiv.threephase.report import fault_records
+        from equiv.threephase.showing.report import fault_records
 
         return fault_records(self)
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object."""
-        from equiv.threephase.report import result_data
+        from equiv.threephase.showing.report import result_data
 
         return result_data(self)
 

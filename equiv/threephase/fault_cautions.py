@@ -6,9 +6,9 @@ from collections.abc import Iterator, Sequence
 
 from equiv.analyses.cautions import DUTY
 from equiv.analyses.result import Caution
-from equiv.threephase.connection import EARTH_FAULTS
-from equiv.threephase.faulted import Fault
 from equiv.threephase.model import OneLine, View
+from equiv.threephase.sequence.connection import EARTH_FAULTS
+from equiv.threephase.sequence.faulted import Fault
 
 CHECKED_UP_TO = 100
 """Buses up to which every fault is found again in phase coordinates."""

@@ -9,8 +9,8 @@ from equiv.analyses.isolate import isolate as isolate_network
 from equiv.errors import Diagnostic, UsageError
 from equiv.network import Network
 from equiv.threephase.asked import Ohms, impedance_of
-from equiv.threephase.composite import isolate as isolate_system
 from equiv.threephase.model import OneLine
+from equiv.threephase.sequence.composite import isolate as isolate_system
 
 _MOST_NAMED = 12
 

@@ -11,12 +11,12 @@ from equiv.analyses.result import Check
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.network import Progress
-from equiv.threephase.connection import Impedances
 from equiv.threephase.grouping import Groups
 from equiv.threephase.model import Shunt
-from equiv.threephase.networks import injection
-from equiv.threephase.sequences import amperes_of, ohms_of, there
-from equiv.threephase.solve import INFINITE, SystemSolution
+from equiv.threephase.sequence.connection import Impedances
+from equiv.threephase.sequence.networks import injection
+from equiv.threephase.sequence.sequences import amperes_of, ohms_of, there
+from equiv.threephase.sequence.solve import INFINITE, SystemSolution
 from equiv.threephase.standard import voltage_factor
 
 BLOCK = 64

@@ -8,11 +8,11 @@ from typing import NamedTuple
 from equiv.analyses.result import Check
 from equiv.errors import NoUniqueSolutionError
 from equiv.threephase.cases import FaultCase, FaultTerm, Phases
-from equiv.threephase.connection import EARTH_FAULTS
-from equiv.threephase.faulted import AtBus, Fault, Faulted
+from equiv.threephase.coordinates.phase_coordinates import Again
 from equiv.threephase.model import OneLine, Shunt
-from equiv.threephase.phase_coordinates import Again
-from equiv.threephase.sequences import amperes_of
+from equiv.threephase.sequence.connection import EARTH_FAULTS
+from equiv.threephase.sequence.faulted import AtBus, Fault, Faulted
+from equiv.threephase.sequence.sequences import amperes_of
 
 TERM_SUM_LIMIT = 1e-9
 PHASE_LIMIT = 1e-9

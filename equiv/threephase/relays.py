@@ -20,14 +20,14 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.threephase.cases import FaultTerm, Phases, Relay, Sequence
-from equiv.threephase.connection import term_weights
-from equiv.threephase.displacement import rotation
-from equiv.threephase.faulted import CANCELLED, Faulted
 from equiv.threephase.grouping import Groups
 from equiv.threephase.model import Item, Link, OneLine, Shunt, Transformer
-from equiv.threephase.networks import injection
-from equiv.threephase.sequences import Charging, Series, ToEarth, amperes_of
-from equiv.threephase.solve import SequenceSolution, SystemSolution
+from equiv.threephase.sequence.connection import term_weights
+from equiv.threephase.sequence.displacement import rotation
+from equiv.threephase.sequence.faulted import CANCELLED, Faulted
+from equiv.threephase.sequence.networks import injection
+from equiv.threephase.sequence.sequences import Charging, Series, ToEarth, amperes_of
+from equiv.threephase.sequence.solve import SequenceSolution, SystemSolution
 
 
 class Place(NamedTuple):

@@ -16,12 +16,23 @@ from equiv.equations.layout import Numbers
 from equiv.threephase.cases import FaultCase, FaultTerm, Phases
 from equiv.threephase.cases import Sequence as SequenceValues
 from equiv.threephase.casework import REMAINDER, slow_peak_factor, why, x_over_r
-from equiv.threephase.connection import EARTH_FAULTS, currents, phase_currents, term_weights
-from equiv.threephase.connection import phases as phases_of
-from equiv.threephase.faulted import Fault, across, require_bounded, scaled_fault, unearthed_rise
 from equiv.threephase.matrices import Matrices
+from equiv.threephase.sequence.connection import (
+    EARTH_FAULTS,
+    currents,
+    phase_currents,
+    term_weights,
+)
+from equiv.threephase.sequence.connection import phases as phases_of
+from equiv.threephase.sequence.faulted import (
+    Fault,
+    across,
+    require_bounded,
+    scaled_fault,
+    unearthed_rise,
+)
+from equiv.threephase.showing.survey_tables import Survey
 from equiv.threephase.standard import asymmetry_factor
-from equiv.threephase.survey_tables import Survey
 
 
 class OfType:

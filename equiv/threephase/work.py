@@ -12,18 +12,18 @@ from equiv.errors import Diagnostic, DoesNotExistError, UsageError
 from equiv.network import Progress
 from equiv.threephase.cases import FaultCase
 from equiv.threephase.casework import CaseMaker
-from equiv.threephase.connection import EARTH_FAULTS
+from equiv.threephase.coordinates.phase_coordinates import PhaseCoordinates, UnsolvedError
 from equiv.threephase.fault_cautions import CHECKED_UP_TO
-from equiv.threephase.faulted import AtBus, Fault
-from equiv.threephase.findings import no_earth_path
 from equiv.threephase.matrices import Matrices
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.phase_coordinates import PhaseCoordinates, UnsolvedError
 from equiv.threephase.proof import checks_of
 from equiv.threephase.relays import Place, RelayFinder
-from equiv.threephase.solve import SystemSolution
+from equiv.threephase.sequence.connection import EARTH_FAULTS
+from equiv.threephase.sequence.faulted import AtBus, Fault
+from equiv.threephase.sequence.findings import no_earth_path
+from equiv.threephase.sequence.solve import SystemSolution
+from equiv.threephase.showing.survey_tables import Survey
 from equiv.threephase.survey import OfType, SurveyCases, Surveys
-from equiv.threephase.survey_tables import Survey
 
 FULL_UP_TO = 100
 """Faulted buses up to which a result has voltages, partial currents and relays."""

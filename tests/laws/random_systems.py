@@ -190,7 +190,7 @@ class Grower:
         )
 
     def _angle(self, bus: Bus) -> int | None:
-        from equiv.threephase.displacement import no_load_angles
+        from equiv.threephase.sequence.displacement import no_load_angles
 
         known = system(*self.items)
         return no_load_angles(known).get(bus.name)

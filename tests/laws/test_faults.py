@@ -16,11 +16,11 @@ from equiv.errors import DoesNotExistError, NoUniqueSolutionError, UsageError
 from equiv.network import Network
 from equiv.threephase import work
 from equiv.threephase.cases import TYPES, FaultCase, Phases
-from equiv.threephase.composite import composite, isolate
-from equiv.threephase.displacement import no_load_angles, rotation
 from equiv.threephase.fault import FaultResult, fault
 from equiv.threephase.model import Bus, Item, OneLine
-from equiv.threephase.sequences import amperes_of
+from equiv.threephase.sequence.composite import composite, isolate
+from equiv.threephase.sequence.displacement import no_load_angles, rotation
+from equiv.threephase.sequence.sequences import amperes_of
 
 A = cmath.rect(1, 2 * math.pi / 3)
 HV, LV = Bus("HV", 33e3), Bus("LV", 11e3)

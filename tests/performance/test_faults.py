@@ -35,9 +35,9 @@ def test_survey_of_every_bus(report: Report) -> None:
     from equiv.equations.sparse import SparseFactor
     from equiv.network import no_progress
     from equiv.threephase.cases import TYPES
-    from equiv.threephase.faulted import Fault
     from equiv.threephase.loading import require_system
     from equiv.threephase.model import View
+    from equiv.threephase.sequence.faulted import Fault
     from equiv.threephase.work import Asked, Work
 
     system = require_system(equiv.parse(grid_system(BUSES)))

@@ -13,10 +13,10 @@ from laws.random_systems import Cable, Machine, system
 import equiv
 from equiv.threephase import standard
 from equiv.threephase.cases import FaultCase, Phases, Sequence
-from equiv.threephase.connection import phases
 from equiv.threephase.fault import fault
 from equiv.threephase.loading import require_system
 from equiv.threephase.model import Bus, OneLine
+from equiv.threephase.sequence.connection import phases
 
 A = cmath.rect(1, 2 * math.pi / 3)
 

@@ -7,10 +7,10 @@ import pytest
 from performance.grids import grid_system
 
 import equiv
-from equiv.threephase import trimmed
 from equiv.threephase.cases import TYPES, FaultCase
 from equiv.threephase.loading import require_system
 from equiv.threephase.model import OneLine
+from equiv.threephase.showing import trimmed
 
 MANY = 240
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 import pytest
 
 import equiv
-from equiv.threephase.findings import doubts, no_earth_path
 from equiv.threephase.loading import parse, require_system
 from equiv.threephase.model import OneLine, View
+from equiv.threephase.sequence.findings import doubts, no_earth_path
 from equiv.threephase.vector_groups import read_group
 
 HEAD = "three-phase 50 Hz\nbus A 33 kV\nbus B 11 kV\nbus C 11 kV\n"

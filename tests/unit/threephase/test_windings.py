@@ -8,8 +8,8 @@ import pytest
 from laws.random_systems import GROUPS, group
 
 from equiv.errors import UsageError
-from equiv.threephase.displacement import rotation, turn
-from equiv.threephase.windings import BALANCED, arranged
+from equiv.threephase.coordinates.windings import BALANCED, arranged
+from equiv.threephase.sequence.displacement import rotation, turn
 
 ANGLES = {
     # IEC 60076-1, clock number n: the second side lags by 30·n degrees (from memory)

@@ -7,7 +7,7 @@ from typing import Any
 
 from equiv.analyses.result import finite, pair
 from equiv.threephase.cases import FaultCase, FaultTerm, Phases, Relay
-from equiv.threephase.sums import sums_of
+from equiv.threephase.showing.sums import sums_of
 
 
 def fault_data(cases: Iterable[FaultCase], basis: str, case: str) -> dict[str, Any]:

@@ -11,10 +11,10 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.equations.solution import Solver, State
 from equiv.network import Branch
-from equiv.threephase.connection import Impedances
-from equiv.threephase.displacement import no_load_angles
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.networks import REFERENCE, SequenceNetwork, injection, three_networks
+from equiv.threephase.sequence.connection import Impedances
+from equiv.threephase.sequence.displacement import no_load_angles
+from equiv.threephase.sequence.networks import REFERENCE, SequenceNetwork, injection, three_networks
 
 KEEPS_DIGITS_UP_TO = 100
 """Buses up to which the branch-current form is solved: it keeps the digits of weak ties, such as

@@ -17,7 +17,7 @@ import numpy as np
 
 from equiv.equations.degenerate import echelon
 from equiv.equations.layout import Integers, Numbers
-from equiv.threephase.conductors import EARTH, Branch3
+from equiv.threephase.coordinates.conductors import EARTH, Branch3
 
 RANK = 1e-10
 """Singular values below this part of the largest are none."""

@@ -15,8 +15,8 @@ from equiv.elements import KINDS, Element
 from equiv.elements.element import NO_OPTIONS, Frequency, Options, Parameters
 from equiv.network import Network
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.sequences import Charging, Missing, Part, Series, ToEarth, parts
-from equiv.threephase.ties import Ties, ties_of
+from equiv.threephase.sequence.sequences import Charging, Missing, Part, Series, ToEarth, parts
+from equiv.threephase.sequence.ties import Ties, ties_of
 from equiv.units import Rectangular
 
 REFERENCE = "gnd"

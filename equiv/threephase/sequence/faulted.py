@@ -16,7 +16,8 @@ import numpy as np
 from equiv.equations.layout import Numbers
 from equiv.errors import Diagnostic, NoUniqueSolutionError
 from equiv.threephase.cases import Phases, Sequence
-from equiv.threephase.connection import (
+from equiv.threephase.model import Bus
+from equiv.threephase.sequence.connection import (
     EARTH_FAULTS,
     Currents,
     Impedances,
@@ -24,11 +25,10 @@ from equiv.threephase.connection import (
     phase_currents,
     phases,
 )
-from equiv.threephase.displacement import rotation
-from equiv.threephase.model import Bus
-from equiv.threephase.networks import injection
-from equiv.threephase.sequences import amperes_of, ohms_of, scaled
-from equiv.threephase.solve import SystemSolution
+from equiv.threephase.sequence.displacement import rotation
+from equiv.threephase.sequence.networks import injection
+from equiv.threephase.sequence.sequences import amperes_of, ohms_of, scaled
+from equiv.threephase.sequence.solve import SystemSolution
 from equiv.threephase.standard import voltage_factor
 
 CANCELLED = 1e-12

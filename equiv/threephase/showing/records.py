@@ -7,7 +7,7 @@ from collections.abc import Iterable, Iterator, Sequence
 from equiv.analyses.result import Caution, Check
 from equiv.analyses.tables import Cell, Column, Table
 from equiv.threephase.cases import FaultCase, FaultTerm
-from equiv.threephase.sums import sums_of
+from equiv.threephase.showing.sums import sums_of
 
 _KEYS = (Column("bus"), Column("type"))
 _PARTIAL = tuple(Column(f"partial_{phase}", "A", family="complex") for phase in "abc")

@@ -6,7 +6,7 @@ import math
 from collections.abc import Iterable, Mapping
 from typing import NamedTuple
 
-from equiv.threephase.sequences import Charging, Missing, Part, Series, ToEarth
+from equiv.threephase.sequence.sequences import Charging, Missing, Part, Series, ToEarth
 
 SAME = 1e-9
 """Ratios around a loop that agree so far carry no current of their own."""

@@ -17,14 +17,14 @@ import numpy as np
 
 from equiv.equations.layout import Numbers
 from equiv.threephase.cases import Phases
-from equiv.threephase.conductors import EARTH, Branch3, Conductors
-from equiv.threephase.displacement import turn
-from equiv.threephase.faulted import Fault
+from equiv.threephase.coordinates.conductors import EARTH, Branch3, Conductors
+from equiv.threephase.coordinates.modes import RANK, modes_of
+from equiv.threephase.coordinates.windings import BALANCED
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.modes import RANK, modes_of
-from equiv.threephase.sequences import amperes_of, ohms_of
+from equiv.threephase.sequence.displacement import turn
+from equiv.threephase.sequence.faulted import Fault
+from equiv.threephase.sequence.sequences import amperes_of, ohms_of
 from equiv.threephase.standard import voltage_factor
-from equiv.threephase.windings import BALANCED
 
 DENSE_UP_TO = 200
 """Unknowns up to which a dense factorisation is used."""

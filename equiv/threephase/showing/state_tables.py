@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from equiv.analyses.tables import Column, Table
 from equiv.threephase.cases import FaultCase, Phases
-from equiv.threephase.setting import Setting, name_of, place_words, source_words
+from equiv.threephase.showing.setting import Setting, name_of, place_words, source_words
 from equiv.threephase.words import fault_words, level_words
 
 MOST_VOLTAGES = 24

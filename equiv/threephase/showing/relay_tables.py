@@ -6,8 +6,8 @@ from collections.abc import Iterator
 
 from equiv.analyses.tables import Column, Table
 from equiv.threephase.cases import FaultCase, Relay
-from equiv.threephase.setting import Setting
-from equiv.threephase.tables import columns_and_rows, sum_note
+from equiv.threephase.showing.setting import Setting
+from equiv.threephase.showing.tables import columns_and_rows, sum_note
 from equiv.threephase.words import LOOP_WORDS, fault_words, level_words, ohms, residual
 from equiv.units import say
 

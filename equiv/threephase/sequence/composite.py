@@ -17,11 +17,11 @@ from equiv.elements.quantity import Quantity
 from equiv.errors import Diagnostic, DoesNotExistError, UsageError, nearest
 from equiv.network import Find, Network
 from equiv.threephase.cases import TYPES
-from equiv.threephase.connection import EARTH_FAULTS
-from equiv.threephase.displacement import no_load_angles
 from equiv.threephase.loading import require_system
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.networks import (
+from equiv.threephase.sequence.connection import EARTH_FAULTS
+from equiv.threephase.sequence.displacement import no_load_angles
+from equiv.threephase.sequence.networks import (
     NAMES,
     REFERENCE,
     SequenceNetwork,
@@ -30,7 +30,7 @@ from equiv.threephase.networks import (
     number,
     sequence_network,
 )
-from equiv.threephase.sequences import amperes_of, ohms_of
+from equiv.threephase.sequence.sequences import amperes_of, ohms_of
 from equiv.units import say
 
 JOINT = "joint"

@@ -8,9 +8,9 @@ from equiv.analyses.result import Check
 from equiv.analyses.superposition.terms import NOTABLE_CANCELLATION
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
 from equiv.threephase.cases import FaultCase, FaultTerm, Phases
-from equiv.threephase.setting import Setting, name_of, place_words, source_words
-from equiv.threephase.state_tables import partials_table, voltages_table
-from equiv.threephase.sums import sums_of
+from equiv.threephase.showing.setting import Setting, name_of, place_words, source_words
+from equiv.threephase.showing.state_tables import partials_table, voltages_table
+from equiv.threephase.showing.sums import sums_of
 from equiv.threephase.words import (
     basis_words,
     fault_words,

@@ -19,10 +19,10 @@ from typing import NamedTuple
 import numpy as np
 
 from equiv.equations.layout import Numbers
-from equiv.threephase.displacement import no_load_angles, turn
+from equiv.threephase.coordinates.windings import BALANCED, arranged
 from equiv.threephase.model import Link, OneLine, Shunt, Transformer, View
-from equiv.threephase.sequences import emf, ohms_of, scaled, there
-from equiv.threephase.windings import BALANCED, arranged
+from equiv.threephase.sequence.displacement import no_load_angles, turn
+from equiv.threephase.sequence.sequences import emf, ohms_of, scaled, there
 
 EARTH = -1
 _MODES = np.vander(np.exp(2j * np.pi * np.arange(3) / 3), 3, increasing=True)

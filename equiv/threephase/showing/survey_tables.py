@@ -9,7 +9,7 @@ import numpy as np
 
 from equiv.analyses.tables import Cell, Column, Table
 from equiv.equations.layout import Numbers
-from equiv.threephase.setting import Setting
+from equiv.threephase.showing.setting import Setting
 from equiv.threephase.words import TYPE_WORDS, basis_words, impedance_words, level_words
 
 MOST_SHOWN = 4

@@ -7,14 +7,14 @@ from typing import TYPE_CHECKING, Any
 
 from equiv.analyses.result import Caution
 from equiv.analyses.tables import Table
-from equiv.threephase.data import fault_data
-from equiv.threephase.records import record_tables
-from equiv.threephase.relay_tables import relay_tables
-from equiv.threephase.setting import Setting
+from equiv.threephase.showing.data import fault_data
+from equiv.threephase.showing.records import record_tables
+from equiv.threephase.showing.relay_tables import relay_tables
+from equiv.threephase.showing.setting import Setting
+from equiv.threephase.showing.survey_tables import survey_table
+from equiv.threephase.showing.tables import case_tables
+from equiv.threephase.showing.trimmed import kept_terms, trimmed, trimmed_words
 from equiv.threephase.standard import equivalent_frequency, voltage_factor
-from equiv.threephase.survey_tables import survey_table
-from equiv.threephase.tables import case_tables
-from equiv.threephase.trimmed import kept_terms, trimmed, trimmed_words
 
 if TYPE_CHECKING:
     from equiv.threephase.fault import FaultResult
