@@ -71,6 +71,28 @@ def statements() -> str:
     return "\n".join(["", "| statement | meaning |", "| --- | --- |", *rows, "", ""])
 
 
+def system_kinds() -> str:
+    """Every kind of item in a three-phase system: a section each, from its docstring."""
+    from equiv.analyses.kinds import sections, summary
+    from equiv.threephase.kinds import KINDS
+
+    lines = []
+    for word, kind in KINDS.items():
+        lines.append(f"\n### `{word}`\n\n{summary(kind)}\n")
+        for name, text in sections(kind).items():
+            code = name in ("Written", "Example")
+            lines.append(f"- {name}: {'`' + text + '`' if code else text}")
+    return "\n".join([*lines, "", ""])
+
+
+def system_statements() -> str:
+    """The statements about a three-phase file."""
+    from equiv.threephase.kinds_page import statements as listed
+
+    rows = [f"| `{written}` | {meaning} |" for written, meaning in listed()]
+    return "\n".join(["", "| statement | meaning |", "| --- | --- |", *rows, "", ""])
+
+
 def exit_statuses() -> str:
     """The exit statuses."""
     from equiv.errors import ExitStatus
@@ -98,7 +120,7 @@ def library() -> str:
 
     parts = [""]
     names = ("load", "parse", "write", "check", "solve", "superpose", "isolate", "port",
-             "load_port", "match", "sweep", "loadtest")  # fmt: skip
+             "load_port", "match", "sweep", "loadtest", "fault")  # fmt: skip
     for name in names:
         function = getattr(equiv, name)
         signature = re.sub(r"'", "", str(inspect.signature(function)))
@@ -112,6 +134,8 @@ def library() -> str:
 PARTS = {
     "kinds": kinds,
     "statements": statements,
+    "three-phase-kinds": system_kinds,
+    "three-phase-statements": system_statements,
     "exit-statuses": exit_statuses,
     "library": library,
 }

@@ -12,9 +12,6 @@ from importlib import import_module
 
 TYPE_CHECKING = False
 if TYPE_CHECKING:
-    from equiv.analyses.check import check as check
-    from equiv.analyses.isolate import isolate as isolate
-    from equiv.analyses.kinds import kinds as kinds
     from equiv.analyses.load import load_port as load_port
     from equiv.analyses.loadtest import loadtest as loadtest
     from equiv.analyses.match import match as match
@@ -30,12 +27,16 @@ if TYPE_CHECKING:
     from equiv.errors import NoUniqueSolutionError as NoUniqueSolutionError
     from equiv.errors import UsageError as UsageError
     from equiv.language import Builder as Builder
-    from equiv.language import load as load
     from equiv.language import load_curve as load_curve
-    from equiv.language import parse as parse
     from equiv.language import quantity as quantity
-    from equiv.language import write as write
     from equiv.network import Network as Network
+    from equiv.threephase.check import check as check
+    from equiv.threephase.fault import fault as fault
+    from equiv.threephase.isolate import isolate as isolate
+    from equiv.threephase.kinds_page import kinds as kinds
+    from equiv.threephase.loading import load as load
+    from equiv.threephase.loading import parse as parse
+    from equiv.threephase.loading import write as write
 
 __version__ = "0.1.0"
 __all__ = [
@@ -49,6 +50,7 @@ __all__ = [
     "UsageError",
     "__version__",
     "check",
+    "fault",
     "isolate",
     "kinds",
     "load",
@@ -68,9 +70,6 @@ __all__ = [
 
 _ANALYSES = frozenset(
     {
-        "check",
-        "isolate",
-        "kinds",
         "load_port",
         "loadtest",
         "match",
@@ -81,7 +80,17 @@ _ANALYSES = frozenset(
         "sweep",
     }
 )
-_LANGUAGE = frozenset({"Builder", "load", "load_curve", "parse", "quantity", "write"})
+_LANGUAGE = frozenset({"Builder", "load_curve", "quantity"})
+_EITHER = {
+    "check": "check",
+    "fault": "fault",
+    "isolate": "isolate",
+    "kinds": "kinds_page",
+    "load": "loading",
+    "parse": "loading",
+    "write": "loading",
+}
+"""What is for networks and three-phase systems alike, and its module."""
 
 
 def __getattr__(name: str) -> object:
@@ -90,6 +99,10 @@ def __getattr__(name: str) -> object:
         import_module("equiv.rendering")  # so that the result can show itself
         # `load` reads a file; the command of that name is `load_port` here
         module = f"equiv.analyses.{name.removesuffix('_port')}"
+    elif name in _EITHER:
+        if name in ("check", "fault", "isolate", "kinds"):
+            import_module("equiv.rendering")
+        module = f"equiv.threephase.{_EITHER[name]}"
     elif name in _LANGUAGE:
         module = "equiv.language"
     elif name == "Network":

@@ -8,7 +8,7 @@ from typing import Any, ClassVar
 
 from equiv.analyses.result import Result
 from equiv.analyses.tables import Column, Table
-from equiv.elements import KINDS, Element
+from equiv.elements import KINDS
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.language import STATEMENTS
 from equiv.network import Network
@@ -32,7 +32,7 @@ class KindsPage(Result):
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """A table a role and one of statements; for one kind its page."""
         if self.kind is not None:
-            return (_page(KINDS[self.kind]),)
+            return (page(self.kind, KINDS[self.kind]),)
         tables = [_statements()]
         for role, title in ROLES.items():
             kinds = [k for k in KINDS.values() if k.role == role]
@@ -41,7 +41,8 @@ class KindsPage(Result):
             tables.append(Table(title, (), columns, rows, name=role))
         hint = (
             'Options of any element: label "TEXT", group NAME, tolerance 1%, at 150 Hz. '
-            "`equiv kinds KIND` shows one kind's page."
+            "`equiv kinds KIND` shows one kind's page, `equiv kinds three-phase` the words of "
+            "three-phase files."
         )
         last = tables[-1]
         tables[-1] = Table(
@@ -74,12 +75,12 @@ def kinds(kind: str | None = None) -> KindsPage:
     return KindsPage(Network({}), kind=kind)
 
 
-def summary(kind: type[Element]) -> str:
+def summary(kind: type) -> str:
     """The first sentence of a kind's docstring."""
     return inspect.getdoc(kind).partition("\n")[0]  # type: ignore[union-attr]
 
 
-def sections(kind: type[Element]) -> dict[str, str]:
+def sections(kind: type) -> dict[str, str]:
     """The labelled parts of a kind's docstring: Written, Equation, Off, Notes, Example, Source."""
     found: dict[str, str] = {}
     name = ""
@@ -93,9 +94,10 @@ def sections(kind: type[Element]) -> dict[str, str]:
     return found
 
 
-def _page(kind: type[Element]) -> Table:
+def page(word: str, kind: type) -> Table:
+    """The page of a kind, from its docstring."""
     lines = tuple(f"{name + ':':<10}{text}" for name, text in sections(kind).items())
-    return Table(kind.kind, (summary(kind),), notes=lines, name=kind.kind)
+    return Table(word, (summary(kind),), notes=lines, name=word)
 
 
 def statements() -> list[tuple[str, str]]:

@@ -80,6 +80,10 @@ class Result:
         """The result as tables to be read; `digits` is for the numbers in their sentences."""
         raise NotImplementedError
 
+    def records(self, digits: int = 5) -> tuple[Table, ...]:
+        """The tables for CSV: those to be read, where a result has no others for programs."""
+        return self.tables(digits)
+
     def plain_text(self) -> str | None:
         """The result as text for a file, where it is that rather than tables."""
         return None
@@ -106,7 +110,8 @@ class Result:
 
     def render(self, form: str = "table", digits: int = 5) -> str:
         """The result's tables as `table`, `csv`, `markdown`, `latex` or `html`."""
-        return DRAWERS[form](self.tables(digits), digits)
+        tables = self.records(digits) if form == "csv" else self.tables(digits)
+        return DRAWERS[form](tables, digits)
 
     def to_markdown(self, digits: int = 5) -> str:
         """The result as Markdown."""

@@ -9,7 +9,13 @@ from pathlib import Path
 
 import typer
 
-from equiv.cli import load_command, loadtest_command, match_command, sweep_command  # noqa: F401
+from equiv.cli import (  # noqa: F401
+    fault_command,
+    load_command,
+    loadtest_command,
+    match_command,
+    sweep_command,
+)
 from equiv.cli.commands import app
 from equiv.cli.environment import Environment, silence
 from equiv.cli.formula_options import with_values

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Annotated, Literal
 import typer
 
 import equiv
-from equiv.cli import completion, port_files
+from equiv.cli import completion, fault_options, port_files
 from equiv.cli import formula_options as formulas
 from equiv.cli import port_options as options
 from equiv.cli.options import Exactly, shared
@@ -171,16 +171,27 @@ def isolate(
             autocompletion=completion.sources,
         ),
     ],
+    bus: fault_options.OneBus = None,
+    type: fault_options.IsolateType = None,
+    fault_impedance: fault_options.IsolateFaultImpedance = None,
+    ground_impedance: fault_options.IsolateGroundImpedance = None,
 ) -> Result:
     """Print the sub-circuit of one source, ready to be run again.
 
-    The other sources become shorts and opens of the same names.
+    The other sources become shorts and opens of the same names. Of a three-phase file it is
+    the sequence networks, joined as a fault at --bus joins them, with the one source in them.
 
     \b
-    Example:
+    Examples:
       equiv isolate supply.equiv Vgen | equiv solve -
+      equiv isolate station.equiv G1 --bus MAIN | equiv superpose -
     """
-    return equiv.isolate(run.network(file), source)
+    asked = {
+        "bus": bus, "type": type, "fault_impedance": fault_impedance,
+        "ground_impedance": ground_impedance,
+    }  # fmt: skip
+    given = {name: word for name, word in asked.items() if word is not None}
+    return equiv.isolate(run.network(file), source, **given)
 
 
 @app.command()
@@ -249,7 +260,7 @@ def kinds(
         typer.Argument(
             metavar="KIND",
             show_default=False,
-            help="One kind of element, in full.",
+            help="One kind of element, in full; three-phase: the words of such files.",
             autocompletion=completion.kinds,
         ),
     ] = None,

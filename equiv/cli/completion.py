@@ -10,7 +10,7 @@ from collections.abc import Callable, Iterable, Iterator
 from contextlib import suppress
 from functools import wraps
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeGuard
 
 import typer
 
@@ -18,6 +18,7 @@ import equiv
 
 if TYPE_CHECKING:
     from equiv.network import Network
+    from equiv.threephase.model import OneLine
 
 LARGEST_FILE = 5_000_000
 MOST_OFFERED = 500
@@ -84,7 +85,12 @@ def parameters(ctx: typer.Context, incomplete: str) -> Iterator[str]:
 @_offered
 def sources(ctx: typer.Context, incomplete: str) -> Iterator[str]:
     """Independent sources, and groups of them."""
-    network = _network(ctx)
+    network: Network | OneLine = _network(ctx)
+    if _is_one_line(network):
+        driving = [item for item in network.items.values() if getattr(item, "drives", False)]
+        yield from (item.name for item in driving)
+        yield from dict.fromkeys(item.group for item in driving if item.group)
+        return
     yield from (source.name for source in network.sources)
     yield from network.groups
 
@@ -101,11 +107,27 @@ def ports(ctx: typer.Context, incomplete: str) -> Iterator[str]:
 
 
 @_offered
-def kinds(ctx: typer.Context, incomplete: str) -> Iterable[str]:
-    """The kinds of element."""
-    from equiv.elements import KINDS
+def buses(ctx: typer.Context, incomplete: str) -> Iterable[str]:
+    """The buses of a three-phase file."""
+    return _system(ctx).buses
 
-    return sorted(KINDS)
+
+@_offered
+def branches(ctx: typer.Context, incomplete: str) -> Iterator[str]:
+    """Lines, reactors and transformers of a three-phase file, and the same at either end."""
+    for name, item in _system(ctx).items.items():
+        ends = [getattr(item, end).name for end in ("first", "second") if hasattr(item, end)]
+        yield from (name, *(f"{name}@{bus}" for bus in ends)) if ends else ()
+
+
+@_offered
+def kinds(ctx: typer.Context, incomplete: str) -> Iterable[str]:
+    """The kinds of element, and of item in a three-phase system."""
+    from equiv.elements import KINDS
+    from equiv.threephase.kinds import KINDS as OF_SYSTEMS
+    from equiv.threephase.kinds_page import WORD
+
+    return sorted({*KINDS, *OF_SYSTEMS, WORD})
 
 
 @_offered
@@ -118,6 +140,20 @@ def samples(ctx: typer.Context, incomplete: str) -> Iterable[str]:
 
 def _nodes(network: Network) -> tuple[str, ...]:
     return (*network.nodes, network.ground)
+
+
+def _is_one_line(network: Network | OneLine) -> TypeGuard[OneLine]:
+    from equiv.threephase.model import OneLine
+
+    return isinstance(network, OneLine)
+
+
+def _system(ctx: typer.Context) -> OneLine:
+    """The three-phase system of the file on the command line."""
+    system: Network | OneLine = _network(ctx)
+    if not _is_one_line(system):
+        raise ValueError("not a three-phase file")
+    return system
 
 
 def _network(ctx: typer.Context) -> Network:

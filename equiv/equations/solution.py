@@ -20,7 +20,7 @@ from equiv.equations.degenerate import (
 from equiv.equations.dense import DenseFactor
 from equiv.equations.factor import Factor, IllConditionedError, factorise
 from equiv.equations.graph import findings
-from equiv.equations.layout import Layout, Numbers
+from equiv.equations.layout import Integers, Layout, Numbers
 from equiv.equations.scalars import like, scalar
 from equiv.equations.sources import source_values as source_values
 from equiv.equations.system import Row, System
@@ -222,6 +222,28 @@ class Solver:
         if self.degenerate is not None:
             bound = bound + self.degenerate.spreads(x)
         return np.where(np.abs(x) > _ROUNDINGS * _EPSILON * bound, x, 0)
+
+    def solutions(self, columns: Numbers) -> Numbers:
+        """The unknowns for each column of source values, solved in blocks."""
+        return self._retry(lambda: self._solved("solve", self.system.excitation(columns)))
+
+    def response(self, right: Numbers) -> Numbers:
+        """x of A x = right."""
+        return self._retry(lambda: self._solved("solve", right))
+
+    def driving_points(self, nodes: Integers) -> Numbers:
+        """The driving-point impedance of each of many nodes over the ground, together."""
+
+        def work() -> Numbers:
+            lu = getattr(self._factor, "lu", None)
+            if lu is not None:
+                from equiv.equations.diagonal import inverse_diagonal
+
+                return inverse_diagonal(lu, nodes)
+            unit = np.eye(self.system.size)[:, nodes]
+            return np.asarray((unit * self._solved("solve", unit)).sum(axis=0))
+
+        return self._retry(work)
 
     def values(self, quantity: Quantity, columns: Numbers) -> list[complex]:
         """A voltage or current for each column of source values, solved in blocks."""

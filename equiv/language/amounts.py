@@ -68,7 +68,7 @@ def read_amount(words: Words, wanted: str = "a value", hint: str | None = None) 
     else:
         found = _composed(words, word, wanted, hint)
     if words.peek() in ("@", "∠"):
-        return _phasor(words, found, words.stretch(start))
+        return read_angle(words, found, words.stretch(start))
     return found
 
 
@@ -201,8 +201,8 @@ def _atom(word: Word, start: int, end: int) -> Written:
     return _when_known(parse_expression(text[1:-1], place[0] + 1), "", text, place)
 
 
-def _phasor(words: Words, magnitude: Written, place: Place) -> Written:
-    """`120 V @ -30 deg`."""
+def read_angle(words: Words, magnitude: Written, place: Place) -> Written:
+    """The angle behind a magnitude: `120 V @ -30 deg`."""
     words.take("@")
     word = words.take("an angle, as in: @ -30 deg")
     end = _atom_end(word.text, 0)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from decimal import localcontext
 
 from equiv.elements.element import Frequency
@@ -49,9 +49,11 @@ def frequency(text: str) -> Frequency:
 
 
 def arguments(
-    given: Mapping[str, str], frequency: str | None
+    given: Mapping[str, str],
+    frequency: str | None,
+    read: Callable[[Words], Written] = read_amount,
 ) -> tuple[dict[str, tuple[Written, Argument]], Override | None]:
-    """What was given to the function; `UsageError` if it cannot be read."""
+    """What was given to the function, values by `read`; `UsageError` if it cannot be read."""
     reports = Reports()
     values: dict[str, tuple[Written, Argument]] = {}
     for name, text in given.items():
@@ -60,7 +62,7 @@ def arguments(
             words = Words(argument)
             words.name("a parameter's name")
             words.take("=")
-            values[name] = read_amount(words), argument
+            values[name] = read(words), argument
             words.end()
         except Mistake as mistake:
             reports.add(mistake, argument)

@@ -24,7 +24,7 @@ Override = tuple[Frequency | LaterFrequency, Argument]
 
 def assembled(reader: Reader, override: Override | None) -> Network:
     """The network that was read; every mistake in it is raised at once."""
-    _require_known(reader)
+    require_known(reader)
     scope = Scope(reader.top.definitions)
     scope.settle(reader.reports.add)
     frequency = _frequency(reader, scope)
@@ -62,7 +62,7 @@ def _raise(reader: Reader) -> None:
         raise kind(reader.reports.diagnostics())
 
 
-def _require_known(reader: Reader) -> None:
+def require_known(reader: Reader) -> None:
     """Every parameter given to the function must be one of the file's."""
     known = reader.top.definitions
     unknown = [name for name in reader.given if name not in known]

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Callable
 
 from equiv.language.amounts import Amount, Later, Place, Written, read_amount
 from equiv.language.blocks import Block, Body, Use, local_parameter
@@ -22,11 +23,18 @@ register = Registry()
 @register(in_blocks=True)
 def given(reading: Reading, body: Body, statement: Statement) -> None:
     """given NAME = VALUE: a parameter, to be used in values."""
+    define(reading, body, statement, read_amount)
+
+
+def define(
+    reading: Reading, body: Body, statement: Statement, read: Callable[[Words], Written]
+) -> None:
+    """Define a parameter, whose value `read` takes from the words."""
     words = opened(statement)
     word = _parameter_name(words)
     _equals(words, f"given {word.text} = VALUE")
     start = words.taken
-    written = read_amount(words)
+    written = read(words)
     place = words.stretch(start)
     words.end(near=UNITS)
     _require_new(body, word)

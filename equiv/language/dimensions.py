@@ -21,6 +21,8 @@ DIMENSIONS: dict[str, Dimension] = {
     "Hz": (0, 0, -1),
     "rad/s": (0, 0, -1),
 }
+POWERS = ("VA", "var")
+"""Units of apparent and reactive power: in expressions, as watts."""
 PER_SECOND = "1/s"
 """A result that may be hertz or radians a second; which one must be said."""
 
@@ -52,6 +54,8 @@ def dimension_of(unit: str) -> Dimension:
     """The dimension of a unit's text, as `unit_of` writes it."""
     if unit in DIMENSIONS:
         return DIMENSIONS[unit]
+    if unit in POWERS:
+        return DIMENSIONS["W"]
     if unit == PER_SECOND:
         return (0, 0, -1)
     powers = dict(part.partition("^")[::2] for part in unit.split())

@@ -28,7 +28,9 @@ def load(
     path = Path(path)
     data = read_bytes(path)
     text = decoded(data, path.name)
-    return _read(Text(path.name, text), path, given, frequency, Origin(path.name, digest(data)))
+    return read_network(
+        Text(path.name, text), path, given, frequency, Origin(path.name, digest(data))
+    )
 
 
 def parse(
@@ -42,10 +44,10 @@ def parse(
     """The network of a text; `read` statements need the folder that they start from."""
     origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
     path = folder / "text" if folder is not None else None
-    return _read(Text(name or "text", text), path, given, frequency, origin)
+    return read_network(Text(name or "text", text), path, given, frequency, origin)
 
 
-def _read(
+def read_network(
     text: Text,
     path: Path | None,
     given: Mapping[str, str] | None,
@@ -66,7 +68,7 @@ def _again(
     origin: Origin,
     values: Mapping[str, str],
 ) -> Network:
-    return _read(Text(name, text), path, {**given, **values}, frequency, origin)
+    return read_network(Text(name, text), path, {**given, **values}, frequency, origin)
 
 
 def read_text(

@@ -129,7 +129,7 @@ class Reader:
                 match = _FIRST_WORD.match(statement.text)
                 if match is None or match[1][0] == "#":
                     return at
-            self._read_statement(match[1], statement, depth)
+            self.read_statement(match[1], statement, depth)
         except Mistake as mistake:
             self._report(mistake, statement)
         except AlreadyReported:
@@ -161,7 +161,8 @@ class Reader:
         joins.append((len(text), number, line))
         return Statement(first.file, first.line, text + line, tuple(joins)), at
 
-    def _read_statement(self, first: str, statement: Statement, depth: int) -> None:
+    def read_statement(self, first: str, statement: Statement, depth: int) -> None:
+        """Read one statement by its first word; `depth` blocks were open before this file."""
         body = self._body
         handler = HANDLERS.get(first)
         kind = KINDS.get(first)

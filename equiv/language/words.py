@@ -230,6 +230,14 @@ class Words:
         self.taken += 1
         return word
 
+    def split(self, length: int) -> None:
+        """Make two words of the next one, the first with so many characters."""
+        text, at = self._list[self.taken]
+        self._list[self.taken : self.taken + 1] = [
+            Word(text[:length], at),
+            Word(text[length:], at + length),
+        ]
+
     def missing(self, wanted: str, hint: str | None = None) -> Mistake:
         """That the statement ends too soon."""
         return Mistake(

@@ -34,24 +34,24 @@ def write(network: Network) -> str:
     made in code, that has names or texts which the language cannot hold.
     """
     head = [
-        *([f"title  {_text(network.title)}"] if network.title else []),
-        *(f"note   {_text(note)}" for note in network.notes),
-        *([f"ground {_name(network.ground)}"] if network.ground != "gnd" else []),
+        *([f"title  {written_text(network.title)}"] if network.title else []),
+        *(f"note   {written_text(note)}" for note in network.notes),
+        *([f"ground {written_name(network.ground)}"] if network.ground != "gnd" else []),
         *([f"frequency {write_value(*network.frequency)}"] if network.frequency != DC else []),
         *(["phasors peak"] if network.phasors == "peak" else []),
     ]
     given = [
-        f"given  {_name(name)} = {_value(value, unit)}"
+        f"given  {written_name(name)} = {written_value(value, unit)}"
         for name, (value, unit) in network.given.items()
     ]
     tail = [
         *(
             f"find  {_names(find.quantity.names, str(find.quantity))}"
-            + (f"  {_quoted(find.label)}" if find.label is not None else "")
+            + (f"  {written_quoted(find.label)}" if find.label is not None else "")
             for find in network.finds
         ),
         *(
-            f"port  {_name(p.name)}  +{_name(p.plus)} -{_name(p.minus)}"
+            f"port  {written_name(p.name)}  +{written_name(p.plus)} -{written_name(p.minus)}"
             for p in network.ports.values()
         ),
     ]
@@ -77,7 +77,7 @@ def _elements(network: Network) -> list[str]:
 def _cells(element: Element) -> tuple[str, str, str, str, str]:
     """Kind, name, first and second end, and everything else."""
     ends = element.nodes or element.links
-    connection = write_connection(type(element), tuple(map(_name, ends)))
+    connection = write_connection(type(element), tuple(map(written_name, ends)))
     if connection[0][0] not in "+-":
         connection[0] = f" {connection[0]}"
     rest = [*connection[2:], *_values(element)]
@@ -86,9 +86,9 @@ def _cells(element: Element) -> tuple[str, str, str, str, str]:
     options = element.options
     for text in (options.label, options.group):
         if text is not None:
-            (_quoted if text is options.label else _name)(text)
+            (written_quoted if text is options.label else written_name)(text)
     rest.extend(write_options(options))
-    return element.kind, _name(element.name), connection[0], connection[1], "  ".join(rest)
+    return element.kind, written_name(element.name), connection[0], connection[1], "  ".join(rest)
 
 
 def _values(element: Element) -> list[str]:
@@ -99,7 +99,7 @@ def _values(element: Element) -> list[str]:
     if is_single(type(element)) and not isinstance(value, Parameters):
         (field,) = element.fields
         keyword = f"{field.keyword} " if field.keyword else ""
-        return [keyword + _value(value, field.units[0])]
+        return [keyword + written_value(value, field.units[0])]
     if not isinstance(value, Parameters):
         raise _unwritable(f"{element.name} has a value of the wrong form")
     words = []
@@ -109,9 +109,11 @@ def _values(element: Element) -> list[str]:
             if field.form == "ratio":
                 texts = [_ratio(*numbers)]
             elif field.form == "file":
-                texts = [_quoted(numbers[0].file)]
+                texts = [written_quoted(numbers[0].file)]
             else:
-                texts = [_value(v, unit) for v, unit in zip(numbers, field.units, strict=True)]
+                texts = [
+                    written_value(v, unit) for v, unit in zip(numbers, field.units, strict=True)
+                ]
             words.append(" ".join([*([field.keyword] if field.keyword else []), *texts]))
     return words
 
@@ -119,14 +121,14 @@ def _values(element: Element) -> list[str]:
 def _ratio(first: Value, second: Value) -> str:
     """`10:1`; a symbol or a formula stands alone, for it is over one."""
     if isinstance(first, Decimal | Fraction) and isinstance(second, Decimal | Fraction):
-        return _value(Ratio(first, second), "")
+        return written_value(Ratio(first, second), "")
     if second != 1:
         raise _unwritable("a ratio of a symbol or formula must be over 1")
-    return _value(first, "")
+    return written_value(first, "")
 
 
-def _value(value: Value, unit: str) -> str:
-    """A value with its unit."""
+def written_value(value: Value, unit: str) -> str:
+    """A value with its unit; `UsageError` if it cannot be written."""
     parts: Iterable[object] = (
         value if isinstance(value, tuple) and not isinstance(value, Formula) else (value,)
     )
@@ -149,7 +151,8 @@ def _shortest(value: Value) -> Value:
     return value
 
 
-def _name(name: str) -> str:
+def written_name(name: str) -> str:
+    """The name, which must be one; `UsageError` if it is none."""
     if not is_name(name) or len(name) > MOST_NAME:
         raise _unwritable(f"{name!r} cannot be written as a name", NAME_RULE)
     return name
@@ -157,17 +160,18 @@ def _name(name: str) -> str:
 
 def _names(names: tuple[str, ...], text: str) -> str:
     for name in names:
-        _name(name)
+        written_name(name)
     return text
 
 
-def _text(text: str) -> str:
+def written_text(text: str) -> str:
     """A title or note: as it stands where that can be read back, else in quotation marks."""
     plain = _SIMPLE_TEXT.fullmatch(text) and len(text) <= MOST_TEXT and not FORBIDDEN.search(text)
-    return text if plain else _quoted(text)
+    return text if plain else written_quoted(text)
 
 
-def _quoted(text: str) -> str:
+def written_quoted(text: str) -> str:
+    """A text in quotation marks; `UsageError` if it cannot be written."""
     if (
         not text.strip()
         or len(text) > MOST_TEXT

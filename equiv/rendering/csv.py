@@ -12,6 +12,7 @@ from __future__ import annotations
 import csv
 import io
 from collections.abc import Iterator, Sequence
+from functools import lru_cache
 
 from equiv.analyses.tables import Cell, Column, Fractions, Measure, Row, Table
 from equiv.errors import printable
@@ -39,6 +40,7 @@ def _table(table: Table, several: bool) -> str:
     return stream.getvalue()
 
 
+@lru_cache(maxsize=4096)
 def harmless(text: str) -> str:
     """A text that no spreadsheet takes for a formula and no terminal for a command."""
     quoted = "'" + text if text.lstrip(" ").startswith(_FORMULA_SIGNS) else text
@@ -70,6 +72,10 @@ def _column(column: Column, cells: Cells, polar: bool) -> Iterator[list[str]]:
     if any(isinstance(cell, Fractions) for cell in cells):
         yield from _exact(f"{name}", bracket, cells)
     elif polar:
+        if set(map(type, cells)) == {complex}:
+            yield [f"{name}_re{bracket}", *(repr(cell.real + 0.0) for cell in cells)]  # type: ignore[union-attr]
+            yield [f"{name}_im{bracket}", *(repr(cell.imag + 0.0) for cell in cells)]  # type: ignore[union-attr]
+            return
         yield [f"{name}_re{bracket}", *(_cell(cell, "real") for cell in cells)]
         yield [f"{name}_im{bracket}", *(_cell(cell, "imag") for cell in cells)]
     else:

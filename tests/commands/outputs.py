@@ -8,7 +8,12 @@ from pathlib import Path
 ROOT = Path(__file__).resolve().parents[2]
 EXPECTED = Path(__file__).with_name("expected")
 
-SAMPLES = sorted(path.stem for path in (ROOT / "samples").glob("*.equiv"))
+SAMPLES = sorted(
+    path.stem
+    for path in (ROOT / "samples").glob("*.equiv")
+    if "\nthree-phase " not in path.read_text(encoding="utf-8")
+)
+"""The networks among the samples."""
 COMMANDS = {
     **{f"superpose-{name}": f"superpose samples/{name}.equiv" for name in SAMPLES},
     **{
@@ -17,6 +22,10 @@ COMMANDS = {
         if "port " in (ROOT / "samples" / f"{name}.equiv").read_text(encoding="utf-8")
     },
     "check": "check samples/pump-station.equiv",
+    "check-three-phase": "check samples/pump-station-faults.equiv",
+    "check-three-phase-csv": "check samples/substation-ring.equiv --as csv",
+    "check-three-phase-doubts": "check docs/examples/doubtful-three-phase.equiv",
+    "check-three-phase-json": "check docs/examples/doubtful-three-phase.equiv --json",
     "solve": "solve samples/line-driver.equiv",
     "solve-two-frequencies": "solve samples/two-frequency-filter.equiv",
     "superpose-detail": "superpose samples/two-stage-amplifier.equiv --detail",
@@ -70,11 +79,35 @@ COMMANDS = {
     "port-several": "port samples/pump-station.equiv PUMP gr,gnd",
     "port-json": "port samples/current-loop.equiv --json",
     "port-csv": "port samples/pump-station.equiv --as csv",
+    "fault": "fault samples/pump-station-faults.equiv BOARD --type three-phase",
+    "fault-all-types": "fault samples/pump-station-faults.equiv AUX --by group --digits 4",
+    "fault-impedances": "fault samples/earthing-study.equiv KILN --type line-line-ground "
+    "--fault-impedance 0.5ohm --ground-impedance 2+0.5j",
+    "fault-standard": "fault samples/pump-station-faults.equiv BOARD --type line-ground "
+    "--basis equivalent-source",
+    "fault-smallest": "fault samples/substation-ring.equiv --basis equivalent-source --case min",
+    "fault-relays": "fault samples/substation-ring.equiv S05 --type line-line "
+    "--branch K34@S04 --branch Tie",
+    "fault-no-path": "fault docs/examples/unearthed-board.equiv WELL --type line-ground",
+    "fault-survey": "fault samples/pump-station-faults.equiv",
+    "fault-csv": "fault samples/earthing-study.equiv --type line-ground --branch T1@MILL --as csv",
+    "fault-json": "fault docs/examples/one-infeed.equiv BOARD --type line-line-ground --json",
+    "fault-markdown": "fault samples/earthing-study.equiv SAW --type line-ground --as markdown",
+    "fault-latex": "fault samples/earthing-study.equiv SAW --type line-ground --as latex",
+    "fault-unknown-bus": "fault samples/substation-ring.equiv S11",
+    "fault-of-a-network": "fault samples/pump-station.equiv",
+    "isolate-fault": "isolate samples/pump-station-faults.equiv pumps --bus BOARD "
+    "--type line-line-ground --fault-impedance 0.1ohm",
+    "isolate-without-bus": "isolate samples/pump-station-faults.equiv pumps",
     "kinds": "kinds",
     "kinds-opamp": "kinds opamp",
+    "kinds-three-phase": "kinds three-phase",
+    "kinds-infeed": "kinds infeed",
     "sample": "sample",
     "error": "check docs/examples/wrong.equiv",
     "error-json": "check docs/examples/wrong.equiv --json",
+    "error-three-phase": "check docs/examples/wrong-three-phase.equiv",
+    "usage-three-phase": "superpose samples/earthing-study.equiv",
     "usage": "superpose samples/pump-station.equiv I:Falt",
 }
 

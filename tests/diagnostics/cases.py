@@ -83,10 +83,11 @@ def names() -> list[str]:
 def message(code: str) -> str:
     """Everything that is said about a case."""
     calls = CALLS.get(code) or [lambda: load(CASES / f"{code}.equiv")]
-    return "\n\n".join(map(_said, calls)) + "\n"
+    return "\n\n".join(map(said, calls)) + "\n"
 
 
-def _said(call: Callable[[], object]) -> str:
+def said(call: Callable[[], object]) -> str:
+    """What a call complains of."""
     try:
         call()
     except EquivError as error:

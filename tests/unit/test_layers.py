@@ -10,7 +10,7 @@ import pytest
 
 PACKAGE = Path(__file__).resolve().parents[2] / "equiv"
 # language and equations do not see each other; neither do errors and units need the rest
-ORDER = ["errors", "units", "elements", "network", "language", "equations", "analyses",
+ORDER = ["errors", "units", "elements", "network", "language", "equations", "analyses", "threephase",
          "rendering", "cli"]  # fmt: skip
 BELOW = {
     layer: set(ORDER[:i]) - ({"language"} if layer == "equations" else set())

@@ -11,6 +11,8 @@ def library(monkeypatch: pytest.MonkeyPatch) -> Library:
     made = Library()
     for name in ("load", "parse"):
         monkeypatch.setitem(vars(equiv), name, made.function(name, NETWORK))
-    for name in ("check", "solve", "superpose", "isolate", "port", "kinds", "sample"):
+    for name in (
+        "check", "fault", "solve", "superpose", "isolate", "port", "kinds", "sample",
+    ):  # fmt: skip
         monkeypatch.setitem(vars(equiv), name, made.function(name))
     return made

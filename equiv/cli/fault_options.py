@@ -1,0 +1,99 @@
+"""The options of `fault`, each declared once; `isolate` has some of them too."""
+
+from __future__ import annotations
+
+from typing import Annotated, Literal
+
+import typer
+
+from equiv.cli import completion
+
+OneType = Literal["three-phase", "line-ground", "line-line", "line-line-ground"]
+
+Buses = Annotated[
+    list[str] | None,
+    typer.Argument(
+        metavar="BUS ...",
+        show_default=False,
+        help="Buses of the file, each in full; a survey of every bus if none is given.",
+        autocompletion=completion.buses,
+    ),
+]
+Type = Annotated[
+    Literal["three-phase", "line-ground", "line-line", "line-line-ground", "all"],
+    typer.Option(
+        metavar="TYPE", help="three-phase, line-ground, line-line, line-line-ground or all."
+    ),
+]
+FaultImpedance = Annotated[
+    str | None,
+    typer.Option(
+        metavar="IMPEDANCE",
+        show_default=False,
+        help="In the fault: 0.5ohm, '0.1+0.2j ohm'. line-line: between the phases; "
+        "line-line-ground: in each leg.",
+    ),
+]
+GroundImpedance = Annotated[
+    str | None,
+    typer.Option(
+        metavar="IMPEDANCE",
+        show_default=False,
+        help="line-line-ground: from the common point to earth.",
+    ),
+]
+Basis = Annotated[
+    Literal["superposition", "equivalent-source"],
+    typer.Option(
+        metavar="BASIS",
+        help="superposition: each EMF is a term; equivalent-source: by IEC 60909-0.",
+    ),
+]
+Case = Annotated[
+    Literal["max", "min"], typer.Option(help="The largest or the smallest fault currents.")
+]
+Branches = Annotated[
+    list[str] | None,
+    typer.Option(
+        "--branch",
+        metavar="NAME",
+        show_default=False,
+        help="Where a relay is: a branch, at its first bus, or NAME@BUS; may repeat.",
+        autocompletion=completion.branches,
+    ),
+]
+By = Annotated[
+    Literal["source", "group"], typer.Option(help="A term for each source or each group.")
+]
+
+OneBus = Annotated[
+    str | None,
+    typer.Option(
+        metavar="BUS",
+        show_default=False,
+        help="Of a three-phase file: the bus of the fault.",
+        autocompletion=completion.buses,
+    ),
+]
+IsolateType = Annotated[
+    OneType | None,
+    typer.Option(
+        metavar="TYPE",
+        show_default=False,
+        help="Of a three-phase file: the type of fault; three-phase if none is given.",
+    ),
+]
+IsolateFaultImpedance = Annotated[
+    str | None,
+    typer.Option(
+        metavar="IMPEDANCE", show_default=False, help="Of a three-phase file: in the fault."
+    ),
+]
+IsolateGroundImpedance = Annotated[
+    str | None,
+    typer.Option(
+        metavar="IMPEDANCE",
+        show_default=False,
+        help="Of a three-phase file: from the joined phases to earth.",
+    ),
+]

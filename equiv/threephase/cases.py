@@ -1,0 +1,91 @@
+"""What is found for one fault: currents (A, at the faulted bus's own voltage level, rms)."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import NamedTuple
+
+TYPES = ("three-phase", "line-ground", "line-line", "line-line-ground")
+"""Phase a is the odd one out for `line-ground`; b and c are joined for the last two."""
+
+
+class Phases(NamedTuple):
+    """A quantity in each phase."""
+
+    a: complex
+    b: complex
+    c: complex
+
+
+class Sequence(NamedTuple):
+    """A quantity in each sequence."""
+
+    zero: complex
+    positive: complex
+    negative: complex
+
+
+class FaultTerm(NamedTuple):
+    """What one source or group gives to the fault current, or to a relay's.
+
+    `contribution` is in the phase of `FaultCase.phase`; `partial` what the source delivers from
+    its own terminals into its own bus during the fault, at the level of `partial_bus`.
+    """
+
+    source: str
+    members: tuple[str, ...]
+    contribution: complex
+    partial: Phases | None = None
+    partial_bus: str | None = None
+    kind: str = ""
+    """The kind of the item; `group`; `earthing` for a transformer's star point, `network` for
+    what shunts and unequal ratios make of the sum (these two in the equivalent-source basis)."""
+
+
+class Relay(NamedTuple):
+    """The current into a branch at its end near the relay, from the bus into the branch.
+
+    `impedance` is the apparent impedance (ohm) of the loop that the fault is in, `infeed_factor`
+    the fault-path current over the relay's; None where the relay's current is zero.
+    """
+
+    branch: str
+    bus: str
+    phases: Phases
+    terms: tuple[FaultTerm, ...]
+    total: complex
+    infeed_factor: complex | None
+    impedance: complex | None
+
+
+class FaultCase(NamedTuple):
+    """One fault at one bus."""
+
+    bus: str
+    type: str
+    volts: float
+    """Nominal voltage of the bus, line to line (V)."""
+    phases: Phases
+    earth: complex
+    """The current to earth, 3·I0."""
+    sequence: Sequence
+    x_over_r: float | None
+    """Of the impedance of the whole fault loop; None where it has no resistance."""
+    peak_factor: float
+    peak: float
+    asymmetrical_rms: float
+    terms: tuple[FaultTerm, ...]
+    total: complex
+    """The current of `phase`: the terms sum to it."""
+    check: Phases | None = None
+    """The phase currents found again in phase coordinates."""
+    voltages: Mapping[str, Phases] = {}
+    """Phase to earth (V) at each bus during the fault."""
+    relays: tuple[Relay, ...] = ()
+    reasons: tuple[str, ...] = ()
+    """In words, why a current is zero: no path for earth-fault current, and where."""
+
+    @property
+    def phase(self) -> str:
+        """The phase that the terms are about."""
+        return "a" if self.type in ("three-phase", "line-ground") else "b"

@@ -1,0 +1,1 @@
+"""The second method: the same faults in three conductors, without sequences."""

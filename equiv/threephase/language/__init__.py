@@ -1,0 +1,1 @@
+"""The three-phase file: text into a one-line diagram, and back into text."""

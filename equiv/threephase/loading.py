@@ -1,0 +1,103 @@
+"""Files of either sort: networks, and three-phase systems (which say so: `three-phase 50 Hz`)."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Mapping
+from pathlib import Path
+from typing import cast
+
+from equiv import language
+from equiv.errors import Diagnostic, UsageError
+from equiv.language.files import Text, decoded, digest, read_bytes
+from equiv.language.loading import read_network
+from equiv.language.words import comment_start
+from equiv.network import Network, Origin
+from equiv.threephase.model import OneLine, three_phase_only
+
+_SAYS_SO = re.compile(r"^\s*three-phase(?!\S)", re.MULTILINE)
+
+
+def load(
+    path: str | Path, given: Mapping[str, str] | None = None, frequency: str | None = None
+) -> Network:
+    """The network of a file; of one that says `three-phase` a `OneLine`, for `equiv.fault`.
+
+    `given` replaces values of the file's parameters, `frequency` its frequency. Raises
+    `FileAccessError`, `NetworkFileError` with every mistake in the file, or `UsageError`.
+    """
+    path = Path(path)
+    data = read_bytes(path)
+    text = Text(path.name, decoded(data, path.name))
+    return _read(text, path, given, frequency, Origin(path.name, digest(data)))
+
+
+def parse(
+    text: str,
+    *,
+    name: str | None = None,
+    folder: Path | None = None,
+    given: Mapping[str, str] | None = None,
+    frequency: str | None = None,
+) -> Network:
+    """The network of a text; of one that says `three-phase` a `OneLine`, for `equiv.fault`.
+
+    `read` statements need the folder that they start from.
+    """
+    origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
+    path = folder / "text" if folder is not None else None
+    return _read(Text(name or "text", text), path, given, frequency, origin)
+
+
+def write(network: Network | OneLine) -> str:
+    """The canonical text of a network or of a three-phase system.
+
+    Instances of blocks are written out element by element. Raises `UsageError` for one, made in
+    code, that has names or texts which the language cannot hold.
+    """
+    if isinstance(network, OneLine):
+        from equiv.threephase.language.writer import write_system
+
+        return write_system(network)
+    return language.write(network)
+
+
+def _read(
+    text: Text,
+    path: Path | None,
+    given: Mapping[str, str] | None,
+    frequency: str | None,
+    origin: Origin,
+) -> Network:
+    """What a text describes."""
+    if not says_three_phase(text.text):
+        return read_network(text, path, given, frequency, origin)
+    from equiv.threephase.language.reader import read_system
+
+    # Typed as what it is for nearly everyone: `fault` and `check` take both.
+    return cast("Network", read_system(text, path, given, frequency, origin))
+
+
+def says_three_phase(text: str) -> bool:
+    """Whether a text is that of a three-phase system: a statement of it says so."""
+    for match in _SAYS_SO.finditer(text) if "three-phase" in text else ():
+        before = text[: match.start()].rstrip("\n").rpartition("\n")[2].rstrip()
+        if not before.endswith("\\") or comment_start(before) < len(before):
+            return True
+    return False
+
+
+def require_network(found: Network | OneLine) -> Network:
+    """The network; `UsageError` where it is a three-phase system."""
+    if isinstance(found, OneLine):
+        raise UsageError(three_phase_only(found.origin.name))
+    return found
+
+
+def require_system(found: Network | OneLine) -> OneLine:
+    """The three-phase system; `UsageError` where it is a network."""
+    if isinstance(found, OneLine):
+        return found
+    message = f"{found.origin.name or 'this text'} does not describe a three-phase system"
+    hint = "such a file says so, as in: three-phase 50 Hz; equiv kinds three-phase shows its words"
+    raise UsageError(Diagnostic("not-three-phase", message, hint=hint))

@@ -1,0 +1,1 @@
+"""The sequence networks of a system, joined at a fault and solved."""

@@ -1,0 +1,1 @@
+"""What a fault calculation shows: its words, tables, JSON and CSV."""
