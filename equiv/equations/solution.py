@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from functools import cached_property
 from typing import TypeVar
 
 import numpy as np
@@ -23,48 +22,13 @@ from equiv.equations.graph import findings
 from equiv.equations.layout import Integers, Layout, Numbers
 from equiv.equations.scalars import like, scalar
 from equiv.equations.sources import source_values as source_values
+from equiv.equations.state import BALANCE, EPSILON, ROUNDINGS
+from equiv.equations.state import State as State
 from equiv.equations.system import Row, System
 from equiv.errors import Diagnostic, NoUniqueSolutionError
 from equiv.network import Network
 
 T = TypeVar("T")
-
-
-class State:
-    """One solution: node voltages over ground (V) and branch currents (A), phasors rms."""
-
-    def __init__(self, system: System, x: Numbers, u: Numbers) -> None:
-        self.system, self.x, self.u = system, x, u
-
-    @cached_property
-    def currents(self) -> Numbers:
-        """Every branch's current."""
-        return self.system.currents(self.x, self.u)
-
-    @cached_property
-    def voltages(self) -> Numbers:
-        """Every branch's voltage."""
-        return self.system.voltages(self.x)
-
-    def of(self, quantity: Quantity) -> complex:
-        """A voltage or current of this solution."""
-        row = self.system.row(quantity)
-        return scalar(row.state @ self.x + row.source @ self.u)
-
-    def largest(self, what: str) -> float:
-        """The largest voltage (V) or current (A) of any branch."""
-        values = self.voltages if what == "V" else self.currents
-        return float(np.abs(values).max(initial=0.0))
-
-    def balance(self) -> float:
-        """|Σ v·i*| / Σ|v·i*| over all branches (B. D. H. Tellegen, 1952); 0 where nothing flows."""
-        powers = self.voltages * np.conj(self.currents)
-        size, off = float(np.abs(powers).sum()), float(abs(powers.sum()))
-        if off <= _BALANCE * size:
-            return off / size if size else 0.0
-        # where no power flows at all, rounding is judged by what the currents were made of
-        gross = float(self.system.gross_powers(self.x, self.u).sum())
-        return off / gross if off <= _ROUNDINGS * _EPSILON * gross else off / size
 
 
 class Solver:
@@ -218,10 +182,10 @@ class Solver:
         if self._absolute_inverse is None:
             self._absolute_inverse = np.abs(self._solved("solve", np.eye(self.system.size)))
         bound = self._absolute_inverse @ self.system.magnitudes(x, u)
-        bound = bound + _EPSILON * np.abs(x).max(initial=0.0)
+        bound = bound + EPSILON * np.abs(x).max(initial=0.0)
         if self.degenerate is not None:
             bound = bound + self.degenerate.spreads(x)
-        return np.where(np.abs(x) > _ROUNDINGS * _EPSILON * bound, x, 0)
+        return np.where(np.abs(x) > ROUNDINGS * EPSILON * bound, x, 0)
 
     def solutions(self, columns: Numbers) -> Numbers:
         """The unknowns for each column of source values, solved in blocks."""
@@ -273,10 +237,10 @@ class Solver:
             size, state = np.abs(x), np.abs(row.state)
             bound = adjoint @ self.system.magnitudes(x, columns) + state @ size
             # one refinement leaves the square of the rounding of the largest unknown
-            bound = bound + _EPSILON * state.sum() * size.max(axis=0, initial=0.0)
+            bound = bound + EPSILON * state.sum() * size.max(axis=0, initial=0.0)
             if self.degenerate is not None:
                 bound = bound + self.degenerate.spread(row.state, x)
-            return np.asarray(_ROUNDINGS * _EPSILON * bound)
+            return np.asarray(ROUNDINGS * EPSILON * bound)
 
         return self._retry(work)
 
@@ -291,12 +255,8 @@ _OUT_OF_RANGE = Diagnostic(
     "the network's values are beyond what floating point can hold",
     hint="values between 1e-100 and 1e100 are safe",
 )
-_BALANCE = 1e-9
-_EPSILON = 2.0**-53
 CLEANED_UP_TO = 500
 """Unknowns up to which the rounding of each is bounded (by an inverse)."""
-_ROUNDINGS = 32
-"""Units of the last digit that rounding may cost a solution."""
 
 
 def all_on(network: Network, frequency: Frequency, form: str = "nodal") -> tuple[Solver, State]:
@@ -306,7 +266,7 @@ def all_on(network: Network, frequency: Frequency, form: str = "nodal") -> tuple
     """
     solver = Solver(network, frequency, form)
     state = solver.state()
-    if solver.form == "nodal" and not state.balance() <= _BALANCE:
+    if solver.form == "nodal" and not state.balance() <= BALANCE:
         solver = Solver(network, frequency, "branch-current")
         state = solver.state()
     return solver, state

@@ -131,6 +131,8 @@ def test_samples_at_dc_are_exact_and_close() -> None:
     done = 0
     for path in sorted((Path(__file__).resolve().parents[2] / "samples").glob("*.equiv")):
         network = equiv.load(path)
+        if not isinstance(network, equiv.Network):  # a three-phase system
+            continue
         if not all(f.omega == 0 for f in network.frequencies) or not network.finds:
             continue
         result = equiv.superpose(network, exact=True)
