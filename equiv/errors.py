@@ -123,7 +123,7 @@ def nearest(word: str, known: Iterable[str]) -> str | None:
     if len(alike) > _MOST_COMPARED:
         alike = [k for k in alike if k[0] == word[0]][:_MOST_COMPARED]
     same = [k for k in alike if k.casefold() == word.casefold()]
-    near = get_close_matches(word, same or alike, 1)
+    near = get_close_matches(word, same, 1, 0.0) or get_close_matches(word, alike, 1)
     return f"did you mean {near[0]}?" if near else None
 
 

@@ -189,7 +189,7 @@ def is_complex(value: Value | None) -> bool:
 
 
 def write_number(number: Number) -> str:
-    """An exact number as the shortest text that reads back to the same one."""
+    """An exact number as a short text that reads back to the same one: `4700`, `8.0712e-6`."""
     if isinstance(number, Fraction):
         if number.denominator == 1:
             return str(number.numerator)
@@ -206,7 +206,8 @@ def write_number(number: Number) -> str:
     elif -len(text) - 5 < exponent <= -len(text):
         text = "0." + text.rjust(-exponent, "0")
     else:
-        text += f"e{exponent}"
+        point = "." if len(text) > 1 else ""
+        text = f"{text[0]}{point}{text[1:]}e{exponent + len(text) - 1}"
     return "-" + text if sign else text
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import traceback
 from collections.abc import Sequence
 from itertools import pairwise
@@ -66,11 +67,18 @@ def _usage_error(error: Exception) -> UsageError:
     message = " ".join(message.split()).removesuffix(".")
     context = getattr(error, "ctx", None)
     path = context.command_path if context is not None else "equiv"
-    return UsageError(
-        Diagnostic(
-            "usage", message[:1].lower() + message[1:], hint=f"{path} --help shows what is expected"
-        )
-    )
+    hint = _type_meant(message) or f"{path} --help shows what is expected"
+    return UsageError(Diagnostic("usage", message[:1].lower() + message[1:], hint=hint))
+
+
+def _type_meant(message: str) -> str | None:
+    """A hint at the type of fault, where a word for it is wrong."""
+    match = re.search(r"'--type': '(.+?)' is not one of", message)
+    if match is None:
+        return None
+    from equiv.threephase.type_words import type_meant
+
+    return type_meant(match[1])
 
 
 def _perform(request: Request, environment: Environment) -> int:

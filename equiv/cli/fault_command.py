@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import TYPE_CHECKING
 
 import equiv
@@ -15,7 +16,7 @@ if TYPE_CHECKING:
 
 
 @app.command()
-@shared
+@partial(shared, refused=["frequency"])
 def fault(
     run: Run,
     file: File,

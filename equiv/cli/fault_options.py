@@ -30,8 +30,8 @@ FaultImpedance = Annotated[
     typer.Option(
         metavar="IMPEDANCE",
         show_default=False,
-        help="In the fault: 0.5ohm, '0.1+0.2j ohm'. line-line: between the phases; "
-        "line-line-ground: in each leg.",
+        help="In the fault: 0.5ohm, '0.1+0.2j ohm'; a bare number is in ohms. "
+        "line-line: between the phases; line-line-ground: in each leg.",
     ),
 ]
 GroundImpedance = Annotated[
@@ -39,7 +39,8 @@ GroundImpedance = Annotated[
     typer.Option(
         metavar="IMPEDANCE",
         show_default=False,
-        help="line-line-ground: from the common point to earth.",
+        help="Of earth faults. line-ground: in series; line-line-ground: from the common point "
+        "to earth.",
     ),
 ]
 Basis = Annotated[
@@ -50,7 +51,8 @@ Basis = Annotated[
     ),
 ]
 Case = Annotated[
-    Literal["max", "min"], typer.Option(help="The largest or the smallest fault currents.")
+    Literal["max", "min"],
+    typer.Option(help="max: with motors; min: without them. By IEC 60909-0, with its c too."),
 ]
 Branches = Annotated[
     list[str] | None,

@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import inspect
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
+from copy import copy
 from dataclasses import dataclass
 from functools import wraps
-from typing import TYPE_CHECKING, Annotated, Any, Literal, NamedTuple, get_type_hints
+from typing import TYPE_CHECKING, Annotated, Any, Literal, NamedTuple, get_args, get_type_hints
 
 import typer
 
@@ -93,8 +94,11 @@ class Request(NamedTuple):
     settings: Settings
 
 
-def shared(command: Callable[..., Result]) -> Callable[..., Request]:
-    """The command with the shared options behind its own; called, it gives a request."""
+def shared(command: Callable[..., Result], refused: Sequence[str] = ()) -> Callable[..., Request]:
+    """The command with the shared options behind its own; called, it gives a request.
+
+    Those that it always refuses are not in its help; given all the same, the refusal says why.
+    """
     # Results are imported when there are any; start-up does without them.
     hints = get_type_hints(command, localns={"Result": Any}, include_extras=True)
     _, *own = inspect.signature(command).parameters.values()
@@ -106,7 +110,16 @@ def shared(command: Callable[..., Result]) -> Callable[..., Request]:
         return Request(lambda run: command(run, **words), settings)
 
     keyword = inspect.Parameter.KEYWORD_ONLY
-    parameters = [parameter.replace(kind=keyword) for parameter in (*own, *_COMMON)]
+    common = [_hidden(option) if option.name in refused else option for option in _COMMON]
+    parameters = [parameter.replace(kind=keyword) for parameter in (*own, *common)]
     request.__signature__ = inspect.Signature(parameters)  # type: ignore[attr-defined]
     request.__annotations__ = {p.name: p.annotation for p in parameters}
     return request
+
+
+def _hidden(option: inspect.Parameter) -> inspect.Parameter:
+    """An option that is read and not offered."""
+    annotation, declared = get_args(option.annotation)
+    declared = copy(declared)
+    declared.hidden = True
+    return option.replace(annotation=Annotated[annotation, declared])

@@ -16,6 +16,7 @@ from equiv.language.mistakes import Mistake
 from equiv.language.names import is_parameter
 from equiv.language.numerals import NUMBER, UNITS, Numeral, bounded, decimal, numeral
 from equiv.language.scope import Scope
+from equiv.language.slips import number_meant
 from equiv.language.words import Word, Words, closing
 from equiv.units import (
     SYMBOL,
@@ -153,7 +154,7 @@ def _composed(words: Words, word: Word, wanted: str, hint: str | None) -> Writte
         return _ratio(word, middle)
     if mark and mark in "+-" and end is not None and text[end : end + 1] == "j":
         return _complex(words, word, (0, middle), (start, end), -1 if mark == "-" else 1)
-    raise _unknown_unit(text[middle:], word.at + middle)
+    raise _not_a_number(word) or _unknown_unit(text[middle:], word.at + middle)
 
 
 def _ratio(word: Word, middle: int) -> Written:
@@ -173,7 +174,7 @@ def _complex(words: Words, word: Word, real: Place | None, imaginary: Place, sig
     if not onto and words.peek() in UNITS:
         onto = words.take("a unit").text
     if onto and onto not in UNITS:
-        raise _unknown_unit(onto, word.at + start)
+        raise _not_a_number(word) or _unknown_unit(onto, word.at + start)
     unit, power = UNITS[onto] if onto else (None, 0)
 
     def joined(first: Number, second: Number, _: str | None) -> Amount:
@@ -214,7 +215,7 @@ def read_angle(words: Words, magnitude: Written, place: Place) -> Written:
             "bad-angle",
             f"expected an angle; found {word.text}",
             word.place,
-            hint="write it as: @ -30 deg, or in radians: @ 0.5 rad",
+            hint=number_meant(word.text) or "write it as: @ -30 deg, or in radians: @ 0.5 rad",
         )
     degrees = measure != "rad"
 
@@ -254,6 +255,13 @@ def _not_a_value(word: Word, wanted: str, hint: str | None) -> Mistake:
     if word.text[0] in "−–":
         hint = "the minus sign is written -"
     return Mistake("not-a-value", f"expected {wanted}; found {word.text}", word.place, hint=hint)
+
+
+def _not_a_number(word: Word) -> Mistake | None:
+    """That a number is written in a way that is not read, such as `0,4`."""
+    hint = number_meant(word.text)
+    message = f"{word.text} is not a number"
+    return Mistake("not-a-value", message, word.place, hint=hint) if hint else None
 
 
 def _unknown_unit(text: str, at: int) -> Mistake:

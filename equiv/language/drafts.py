@@ -20,6 +20,7 @@ from equiv.language.numerals import UNITS
 from equiv.language.options import OPTIONS, Chosen, option_of
 from equiv.language.quantities import read_quantity
 from equiv.language.scope import Scope
+from equiv.language.slips import number_meant
 from equiv.language.words import Statement, Words
 from equiv.units import Value
 
@@ -192,6 +193,10 @@ def _unexpected(words: Words, kind: type[Element]) -> Mistake:
         )
     if word.text == "senses":
         return Mistake("extra-word", f"{kind.kind} senses nothing", word.place)
+    before = words.peek(-1) if words.taken else ""
+    if word.text in UNITS and (meant := number_meant(before)):
+        place = words.stretch(words.taken - 1)
+        return Mistake("not-a-value", f"{before} is not a number", place, hint=meant)
     pool = [*known, *UNITS] if words.taken else known
     return Mistake(
         "extra-word",

@@ -87,7 +87,7 @@ class _Parser:
 
     def wrong(self, wanted: str) -> Mistake:
         found = self.token or "the end of the expression"
-        hint = "a power is written ^" if self.token == "*" else None
+        hint = {"*": "a power is written ^", ",": "a decimal point is written ."}.get(self.token)
         return Mistake("bad-expression", f"expected {wanted}; found {found}", self.place, hint=hint)
 
     def sum(self) -> None:

@@ -10,6 +10,7 @@ from typing import NamedTuple
 from equiv.language.dimensions import dimension_of
 from equiv.language.mistakes import AlreadyReported, Mistake
 from equiv.language.operations import Measure
+from equiv.language.slips import number_meant
 from equiv.language.words import Statement
 from equiv.units import Formula, Ratio, Rounded, Value, as_rounded
 
@@ -70,7 +71,7 @@ class Scope:
             "unknown-parameter",
             f"there is no parameter called {name}",
             place,
-            hint=f"define it: given {name} = VALUE",
+            hint=number_meant(name) or f"define it: given {name} = VALUE",
             near=(name, self._names()),
         )
 

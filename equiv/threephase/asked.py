@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import cmath
+from collections.abc import Sequence
 
 from equiv.errors import Diagnostic, UsageError
 from equiv.language import value
+from equiv.threephase.sequence.connection import EARTH_FAULTS
 from equiv.units import Symbol, as_number
 
 Ohms = str | complex
@@ -27,6 +29,14 @@ def impedance_of(given: Ohms, what: str) -> complex:
     if not cmath.isfinite(number) or number.real < 0:
         raise _refuse(what, "must have a resistance of zero or more", given)
     return number
+
+
+def require_place(types: Sequence[str], ground: complex) -> None:
+    """Raise UsageError where an impedance to earth has no place in any type that is asked for."""
+    if ground and not any(kind in EARTH_FAULTS for kind in types):
+        message = f"a ground impedance has no place in a {types[0]} fault: it does not reach earth"
+        hint = "leave it out, or ask for line-ground or line-line-ground"
+        raise UsageError(Diagnostic("ground-impedance", message, hint=hint))
 
 
 def _refuse(what: str, why: str, given: Ohms) -> UsageError:

@@ -8,6 +8,11 @@ from typing import NamedTuple
 TYPES = ("three-phase", "line-ground", "line-line", "line-line-ground")
 """Phase a is the odd one out for `line-ground`; b and c are joined for the last two."""
 
+STAR_POINT = "star point"
+"""The kind of what a transformer's earthed star point gives."""
+STARS_AND_NETWORK = "star points and network"
+"""The name of what star points, line charging and unequal ratios give, where they are together."""
+
 
 class Phases(NamedTuple):
     """A quantity in each phase."""
@@ -15,6 +20,12 @@ class Phases(NamedTuple):
     a: complex
     b: complex
     c: complex
+
+
+def largest_phase(of: Phases) -> str:
+    """The phase with the largest value; the first of those that differ only by rounding."""
+    most = max(map(abs, of))
+    return next(name for name, x in zip("abc", of, strict=True) if abs(x) >= most * (1 - 1e-9))
 
 
 class Sequence(NamedTuple):
@@ -38,15 +49,19 @@ class FaultTerm(NamedTuple):
     partial: Phases | None = None
     partial_bus: str | None = None
     kind: str = ""
-    """The kind of the item; `group`; `earthing` for a transformer's star point, `network` for
-    what shunts and unequal ratios make of the sum (these two in the equivalent-source basis)."""
+    """The kind of the item; `group`; `star point` for that of a transformer, `network` for
+    what line charging and unequal ratios give (these two in the equivalent-source basis)."""
+    parallel: int = 1
+    """How many items give it together: `count` of the file, added up for a group."""
 
 
 class Relay(NamedTuple):
     """The current into a branch at its end near the relay, from the bus into the branch.
 
+    Where several items are `parallel` the relay is in one of them, and all is of that one.
     `impedance` is the apparent impedance (ohm) of the loop that the fault is in, `infeed_factor`
-    the fault-path current over the relay's; None where the relay's current is zero.
+    the fault-path current over the relay's; None where the relay's current is zero, and where
+    `blind` says why the relay does not look at the fault.
     """
 
     branch: str
@@ -56,6 +71,9 @@ class Relay(NamedTuple):
     total: complex
     infeed_factor: complex | None
     impedance: complex | None
+    parallel: int = 1
+    blind: str = ""
+    """In words, why it has neither: the fault is at its own bus, or not ahead of it."""
 
 
 class FaultCase(NamedTuple):
@@ -70,10 +88,10 @@ class FaultCase(NamedTuple):
     """The current to earth, 3·I0."""
     sequence: Sequence
     x_over_r: float | None
-    """Of the impedance of the whole fault loop; None where it has no resistance."""
-    peak_factor: float
-    peak: float
-    asymmetrical_rms: float
+    """Of the impedance of the whole fault loop; None where it has no resistance, or no peak."""
+    peak_factor: float | None
+    peak: float | None
+    asymmetrical_rms: float | None
     terms: tuple[FaultTerm, ...]
     total: complex
     """The current of `phase`: the terms sum to it."""
@@ -84,6 +102,8 @@ class FaultCase(NamedTuple):
     relays: tuple[Relay, ...] = ()
     reasons: tuple[str, ...] = ()
     """In words, why a current is zero: no path for earth-fault current, and where."""
+    no_peak: str = ""
+    """In words, why there is no X/R, peak and first-cycle rms: a capacitive loop, no current."""
 
     @property
     def phase(self) -> str:

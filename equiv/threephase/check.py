@@ -13,8 +13,9 @@ from equiv.analyses.tables import Column, Table
 from equiv.network import Network
 from equiv.threephase.kinds import KINDS
 from equiv.threephase.model import OneLine, Shunt
+from equiv.threephase.plausible import implausible
 from equiv.threephase.sequence.findings import doubts
-from equiv.threephase.words import level_words
+from equiv.threephase.words import before_words, level_words
 
 
 @dataclass(frozen=True)
@@ -27,6 +28,10 @@ class SystemReport(Result):
     hertz: float = 0.0
     levels: tuple[float, ...] = ()
     """The nominal voltages of the buses (V), from the highest."""
+    prefault: float = 1.0
+    """The voltage before the fault where no EMF is given, per unit of the nominal."""
+    before: tuple[str, ...] = ()
+    """The same in words, where it is not the nominal one and some EMF follows from it."""
 
     def tables(self, digits: int = 5) -> tuple[Table, ...]:
         """What there is, and what is doubtful."""
@@ -35,7 +40,7 @@ class SystemReport(Result):
         return (
             Table(
                 self.network.title or "Three-phase system",
-                (f"Three-phase, {self.hertz:g} Hz; voltage levels: {levels}",),
+                (f"Three-phase, {self.hertz:g} Hz; voltage levels: {levels}", *self.before),
                 (Column("what", key=True), Column("number")),
                 Table.rows_of(self.counts),
                 words or ("Nothing is wrong or doubtful.",),
@@ -49,6 +54,7 @@ class SystemReport(Result):
             "counts": dict(self.counts),
             "hertz": [self.hertz],
             "kilovolts": [volts / 1e3 for volts in self.levels],
+            "prefault": self.prefault,
         }
 
 
@@ -61,10 +67,12 @@ def check(network: Network | OneLine) -> Report | SystemReport:
         return check_network(network)
     return SystemReport(
         Network({}, network.title, network.notes, origin=network.origin),
-        cautions=doubts(network),
+        cautions=(*doubts(network), *implausible(network)),
         counts=_counts(network),
         hertz=network.hertz,
         levels=tuple(sorted({bus.volts for bus in network.buses.values()}, reverse=True)),
+        prefault=network.prefault,
+        before=before_words(network),
     )
 
 

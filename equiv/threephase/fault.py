@@ -10,7 +10,7 @@ from equiv.analyses.result import Result
 from equiv.analyses.tables import Table
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.network import Network, Progress, no_progress
-from equiv.threephase.asked import Ohms, impedance_of
+from equiv.threephase.asked import Ohms, impedance_of, require_place
 from equiv.threephase.cases import TYPES, FaultCase
 from equiv.threephase.fault_cautions import cautions_of
 from equiv.threephase.loading import require_system
@@ -19,6 +19,9 @@ from equiv.threephase.relays import places
 from equiv.threephase.sequence.faulted import Fault
 from equiv.threephase.showing.survey_tables import Survey
 from equiv.threephase.work import Asked, Work
+
+BASES = ("superposition", "equivalent-source")
+CASES = ("max", "min")
 
 
 @dataclass(frozen=True)
@@ -36,6 +39,7 @@ class FaultResult(Result):
     surveys: Sequence[Survey] = ()
     basis: str = "superposition"
     case: str = "max"
+    types: tuple[str, ...] = ()
     fault_impedance: complex = 0j
     ground_impedance: complex = 0j
     by: str = "source"
@@ -80,43 +84,46 @@ def fault(
     Arguments: `type` one of three-phase, line-ground, line-line, line-line-ground, all;
     `fault_impedance` (ohm) in each phase, between phase a and earth, between phases b and c, or
     in each of two phase legs; `ground_impedance` (ohm) from the common point to earth, in
-    series for line-ground; `case` `max` or `min`; `branches` where relays are (`NAME`, at the
-    first bus of it, or `NAME@BUS`); `by` "group" makes groups terms.
+    series for line-ground, no place in the others; `case` `max` or `min`; `branches` where
+    relays are (`NAME`, at the first bus of it, or `NAME@BUS`); `by` "group" makes groups terms.
     Errors: UsageError (relays with more than 100 buses too); DoesNotExistError where zero-sequence
-    data are missing;
-    NoUniqueSolutionError where nothing limits a current.
+    data are missing; NoUniqueSolutionError where nothing limits a current.
     Sign convention: out of the bus into the fault; into a relay's branch from its bus; out of a
     source into its bus. Angles count from the no-load voltage of phase a of the faulted bus.
     Source: C. L. Fortescue (1918); IEC 60909-0:2016 (from memory).
     """
     diagram = require_system(system)
-    view = View(
-        _one_of("basis", basis, ("superposition", "equivalent-source")),
-        _one_of("case", case, ("max", "min")),
-    )
+    view = View(_one_of("basis", basis, BASES), _one_of("case", case, CASES))
     kinds = TYPES if _one_of("type", type, (*TYPES, "all")) == "all" else (type,)
     in_fault = impedance_of(fault_impedance, "fault impedance")
     to_earth = impedance_of(ground_impedance, "ground impedance")
-    faults = [Fault(kind, in_fault, to_earth) for kind in kinds]
+    require_place(kinds, to_earth)
     asked = Asked(
-        diagram, view, _known(diagram, buses), faults, places(diagram, tuple(branches)),
-        _one_of("by", by, ("source", "group")), progress,
+        diagram, view, _known(diagram, buses), [Fault(k, in_fault, to_earth) for k in kinds],
+        places(diagram, tuple(branches)), _one_of("by", by, ("source", "group")), progress,
     )  # fmt: skip
+    return _result(asked, bool(buses), explicit=type != "all")
+
+
+def _result(asked: Asked, named: bool, explicit: bool) -> FaultResult:
+    """What is asked for, found; `named` and `explicit` where buses and a type were named."""
     work = Work(asked)
-    lacking = work.leave_out(bool(buses), explicit=type != "all")
-    found = work.few(survey=not buses) if work.full else work.many()
-    cautions = cautions_of(diagram, view, faults, len(found.cases), found.checked)
+    lacking = work.leave_out(named, explicit)
+    found = work.few(survey=not named) if work.full else work.many()
+    one = asked.faults[0]
+    cautions = cautions_of(asked.system, asked.view, asked.faults, len(found.cases), found.checked)
     return FaultResult(
-        diagram,
+        asked.system,
         checks=found.checks,
         cautions=(*lacking, *cautions),
         cases=found.cases,
         surveys=found.surveys,
-        basis=basis,
-        case=case,
-        fault_impedance=in_fault,
-        ground_impedance=to_earth,
-        by=by,
+        basis=asked.view.basis,
+        case=asked.view.case,
+        types=tuple(each.type for each in asked.faults),
+        fault_impedance=one.impedance,
+        ground_impedance=one.ground,
+        by=asked.by,
     )
 
 

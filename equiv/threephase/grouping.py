@@ -65,7 +65,10 @@ class Groups:
     def of_headings(self, totals: Iterable[complex]) -> Iterator[FaultTerm]:
         """A term for each source or group from their totals, without partial currents."""
         for heading, total in zip(self.headings, totals, strict=True):
-            yield FaultTerm(heading.name, heading.members, complex(total), kind=heading.kind)
+            yield FaultTerm(
+                heading.name, heading.members, complex(total), kind=heading.kind,
+                parallel=self._count(heading),
+            )  # fmt: skip
 
     def _term(
         self, heading: Heading, values: Numbers, partials: Sequence[Phases] | None
@@ -78,4 +81,9 @@ class Groups:
             rows = [partials[n] for n in heading.numbers]
             partial = Phases(*(sum(column) for column in zip(*rows, strict=True)))
         at = buses.pop() if partial is not None else None
-        return FaultTerm(heading.name, heading.members, total, partial, at, heading.kind)
+        count = self._count(heading)
+        return FaultTerm(heading.name, heading.members, total, partial, at, heading.kind, count)
+
+    def _count(self, heading: Heading) -> int:
+        """How many items are behind a heading."""
+        return sum(self.system.items[name].count for name in heading.members)

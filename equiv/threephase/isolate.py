@@ -8,7 +8,7 @@ from equiv.analyses.isolate import Isolation
 from equiv.analyses.isolate import isolate as isolate_network
 from equiv.errors import Diagnostic, UsageError
 from equiv.network import Network
-from equiv.threephase.asked import Ohms, impedance_of
+from equiv.threephase.asked import Ohms, impedance_of, require_place
 from equiv.threephase.model import OneLine
 from equiv.threephase.sequence.composite import isolate as isolate_system
 
@@ -43,14 +43,11 @@ def isolate(
         return isolate_network(network, source)
     if bus is None:
         raise UsageError(_no_bus(network))
-    return isolate_system(
-        network,
-        source,
-        bus,
-        type or "three-phase",
-        impedance_of(fault_impedance or 0, "fault impedance"),
-        impedance_of(ground_impedance or 0, "ground impedance"),
-    )
+    kind = type or "three-phase"
+    in_fault = impedance_of(fault_impedance or 0, "fault impedance")
+    to_earth = impedance_of(ground_impedance or 0, "ground impedance")
+    require_place((kind,), to_earth)
+    return isolate_system(network, source, bus, kind, in_fault, to_earth)
 
 
 def _no_fault(network: Network, asked: str) -> Diagnostic:

@@ -17,7 +17,7 @@ from equiv.threephase.language.statements import STATEMENTS
 
 WORD = "three-phase"
 _OPTIONS = (
-    "Behind any item's values: count N (of the same, in parallel), group NAME (sources: reported "
+    "After any item's values: count N (of the same, in parallel), group NAME (sources: reported "
     'together), label "TEXT". EARTHING is solid, open or an impedance.'
 )
 _UNITS = (

@@ -8,12 +8,15 @@ from pathlib import Path
 from typing import cast
 
 from equiv import language
-from equiv.errors import Diagnostic, UsageError
+from equiv.errors import Diagnostic, NetworkFileError, UsageError
 from equiv.language.files import Text, decoded, digest, read_bytes
 from equiv.language.loading import read_network
 from equiv.language.words import comment_start
 from equiv.network import Network, Origin
 from equiv.threephase.model import OneLine, three_phase_only
+
+WORD = "three-phase"
+"""What a three-phase file says."""
 
 _SAYS_SO = re.compile(r"^\s*three-phase(?!\S)", re.MULTILINE)
 
@@ -62,6 +65,21 @@ def write(network: Network | OneLine) -> str:
     return language.write(network)
 
 
+def _hinted(diagnostic: Diagnostic) -> Diagnostic:
+    """An error of a network, with a hint where its word is one of three-phase files."""
+    from equiv.threephase.kinds import KINDS
+    from equiv.threephase.language.statements import STATEMENTS
+
+    if diagnostic.code != "unknown-keyword" or diagnostic.span is None:
+        return diagnostic
+    at = diagnostic.span.column - 1
+    word = diagnostic.span.text[at : at + diagnostic.span.length]
+    if word.lower() not in (*KINDS, *STATEMENTS):
+        return diagnostic
+    says_so = "a three-phase file says so: three-phase 50 Hz"
+    return diagnostic._replace(hint="write three-phase" if word.lower() == WORD else says_so)
+
+
 def _read(
     text: Text,
     path: Path | None,
@@ -71,7 +89,10 @@ def _read(
 ) -> Network:
     """What a text describes."""
     if not says_three_phase(text.text):
-        return read_network(text, path, given, frequency, origin)
+        try:
+            return read_network(text, path, given, frequency, origin)
+        except NetworkFileError as error:
+            raise NetworkFileError(tuple(map(_hinted, error.diagnostics))) from None
     from equiv.threephase.language.reader import read_system
 
     # Typed as what it is for nearly everyone: `fault` and `check` take both.

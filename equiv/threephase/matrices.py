@@ -42,10 +42,15 @@ class Matrices:
         self.machines = [i for i in there(system, view) if isinstance(i, Shunt) and i.drives]
         self.groups = Groups(system, [item.name for item in self.machines], by)
         self.z = self._impedances(solution, progress, "driving-point impedances")
-        self.z_slow = self._impedances(slow, progress, "impedances for the peak")
+        self.progress = progress
         self.superposed = view.basis == "superposition"
         self.shares = self._terms(progress) if self.superposed else {}
         self.delivered = {} if self.superposed else self._partials(progress)
+
+    @cached_property
+    def z_slow(self) -> Impedances:
+        """The driving-point impedances at the frequency at which R/X is found for the peak."""
+        return self._impedances(self.slow, self.progress, "impedances for the peak")
 
     @cached_property
     def voltages(self) -> Numbers:
@@ -56,7 +61,8 @@ class Matrices:
             numbers = [self.solution.numbers[bus] for bus in self.buses]
             return positive.voltages(positive.before)[numbers]
         at = [system.buses[bus] for bus in self.buses]
-        return np.array([voltage_factor(b.volts, view.case, b.tolerance) for b in at])
+        c = np.array([voltage_factor(b.volts, view.case, b.tolerance) for b in at])
+        return np.where(np.isfinite(self.z.positive), c, 0)
 
     def _impedances(self, solution: SystemSolution, progress: Progress, work: str) -> Impedances:
         found = []

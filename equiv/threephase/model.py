@@ -99,7 +99,10 @@ class Link(Item):
         raise NotImplementedError
 
     def charging(self, sequence: int, view: View) -> complex:
-        """The whole shunt admittance (S), half of it at each end."""
+        """The whole shunt admittance (S), half of it at each end.
+
+        In the equivalent-source method it is in the zero sequence alone.
+        """
         return 0j
 
 

@@ -16,6 +16,10 @@ from equiv.threephase.sequence.sequences import amperes_of
 
 TERM_SUM_LIMIT = 1e-9
 PHASE_LIMIT = 1e-9
+SUM_CHECKS = {
+    "superposition": "sum of the terms against all sources at once",
+    "equivalent-source": "sum of the contributions against the fault current",
+}
 SMALLEST = 1e-6
 """Of the bolted current: what is smaller has lost digits to it."""
 
@@ -49,12 +53,11 @@ def apart(found: Faulted, again: Again, machines: Iterable[Shunt]) -> Apart:
     for item in machines:
         off = _most(found.partial(item.name, item.bus), again.delivered[item.name])
         partials = max(partials, off / amperes_of(item.bus, system.base) / level)
-    if found.solution.view.basis == "superposition":
-        for name, bus in system.buses.items():
-            pair = (found.bus_voltages(name), again.voltages[name])
-            if not (earthed and ties.label[name] == ties.label[at.name]):
-                pair = (_between(pair[0]), _between(pair[1]))
-            voltages = max(voltages, _most(*pair) / bus.volts)
+    for name, bus in system.buses.items():
+        pair = (found.bus_voltages(name), again.voltages[name])
+        if not (earthed and ties.label[name] == ties.label[at.name]):
+            pair = (_between(pair[0]), _between(pair[1]))
+        voltages = max(voltages, _most(*pair) / bus.volts)
     return Apart(currents, partials, voltages)
 
 
@@ -77,6 +80,7 @@ def three_phase(at: AtBus) -> float:
 
 def checks_of(
     system: OneLine,
+    basis: str,
     cases: Sequence[FaultCase],
     found: Sequence[Apart],
     bolted: Mapping[str, float],
@@ -85,8 +89,9 @@ def checks_of(
 
     `bolted` is the three-phase current (A) of each faulted bus.
     """
-    sums = max((_sum_off(system, case, bolted[case.bus]) for case in cases), default=0.0)
-    checks = [Check("sum of the terms against all sources at once", sums, TERM_SUM_LIMIT)]
+    relays = basis == "superposition"  # the source at the fault is one term there
+    sums = max((_sum_off(system, case, bolted[case.bus], relays) for case in cases), default=0.0)
+    checks = [Check(SUM_CHECKS[basis], sums, TERM_SUM_LIMIT)]
     if found:
         names = ("phase currents", "partial currents", "bus voltages")
         checks += [
@@ -96,11 +101,11 @@ def checks_of(
     return tuple(checks)
 
 
-def _sum_off(system: OneLine, case: FaultCase, bolted: float) -> float:
+def _sum_off(system: OneLine, case: FaultCase, bolted: float, relays: bool) -> float:
     """How far terms are from their totals; a relay's against the bolted current at its level."""
     gross = sum(abs(term.contribution) for term in case.terms)
     worst = _off(case.terms, case.total, gross)
-    for relay in case.relays:
+    for relay in case.relays if relays else ():
         level = case.volts / system.buses[relay.bus].volts
         own = sum(abs(term.contribution) for term in relay.terms)
         worst = max(worst, _off(relay.terms, relay.total, max(own, bolted * level)))

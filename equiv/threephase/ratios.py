@@ -18,6 +18,13 @@ def ratio_off(item: Transformer) -> float:
     return abs(ratio / nominal - 1)
 
 
+def _reversed(item: Transformer) -> bool:
+    """Whether the rated voltages would fit if they changed sides."""
+    first, second = item.rated_voltages
+    turned = second.real / first.real
+    return abs(turned * item.second.volts / item.first.volts - 1) <= MOST_OFF
+
+
 def _words(item: Transformer) -> str:
     first, second = (level_words(side.real) for side in item.rated_voltages)
     return (
@@ -32,7 +39,11 @@ def wrong_ratio(item: Transformer) -> Problem | None:
     if ratio_off(item) <= MOST_OFF:
         return None
     hint = "the first voltage is that of the side named first"
-    return Problem("wrong-ratio", _words(item), "rated_voltages", hint)
+    words = _words(item)
+    if _reversed(item):
+        words = f"{words.rpartition(':')[0]}: reversed"
+        hint = f"exchange the voltages or the buses: {hint}"
+    return Problem("wrong-ratio", words, "rated_voltages", hint)
 
 
 def doubtful_ratio(item: Transformer) -> str | None:

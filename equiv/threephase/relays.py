@@ -1,5 +1,7 @@
 """What a relay in a branch sees: its current term by term, infeed factor, apparent impedance.
 
+A relay in one of several items in parallel sees the current of that one.
+
 The relay's current is a sum of element currents in each sequence network; the coefficients of
 the EMFs and of the fault current on it come from one transposed solve a sequence.
 
@@ -19,6 +21,7 @@ import numpy as np
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.errors import Diagnostic, UsageError, nearest
+from equiv.threephase.asymmetry import NO_CURRENT
 from equiv.threephase.cases import FaultTerm, Phases, Relay, Sequence
 from equiv.threephase.grouping import Groups
 from equiv.threephase.model import Item, Link, OneLine, Shunt, Transformer
@@ -66,6 +69,22 @@ def _ends(item: Item) -> tuple[str, ...]:
     return (item.bus.name,)
 
 
+def _ahead(system: OneLine, place: Place) -> frozenset[str]:
+    """The buses that the relay looks at: beyond its branch, without a way through its own bus."""
+    ways: dict[str, list[str]] = {}
+    for item in system.items.values():
+        ends = _ends(item)
+        for one, other in zip(ends, reversed(ends), strict=True):
+            ways.setdefault(one, []).append(other)
+    waiting = [end for end in _ends(place.item) if end != place.bus]
+    found = {place.bus, *waiting}
+    while waiting:
+        new = [bus for bus in ways[waiting.pop()] if bus not in found]
+        found.update(new)
+        waiting += new
+    return frozenset(found - {place.bus})
+
+
 class Response(NamedTuple):
     """The relay's current in one sequence, per unit; what rounding alone can make is zero."""
 
@@ -81,11 +100,14 @@ class RelayFinder:
     def __init__(self, solution: SystemSolution, place: Place) -> None:
         self.solution, self.place = solution, place
         self.responses = {s: _response(of, place) for s, of in solution.of.items()}
+        self.ahead = _ahead(solution.system, place)
 
     def relay(self, faulted: Faulted, groups: Groups) -> Relay:
         """What the relay sees of a fault."""
         at, solution, bus = faulted.at, self.solution, self.place.bus
-        unit = amperes_of(solution.system.buses[bus], solution.system.base)
+        level = amperes_of(solution.system.buses[bus], solution.system.base)
+        count = self.place.item.count
+        unit = level / count
         drawn = {s: self._by_injection(s, at.name) for s in (0, 1, 2)}
         of = Sequence(*(self._during(s, drawn[s] * i) for s, i in faulted.by_number.items()))
         phases = faulted.in_phases(of, bus, unit)
@@ -102,10 +124,15 @@ class RelayFinder:
             name = f"equivalent source at {at.name}"
             value = complex(_summed(*(w * at.voltage * unit for w in through)))
             terms = (FaultTerm(name, (name,), value, kind="network"),)
-        infeed, impedance = self._seen(faulted, phases, total, unit, of)
+        gross = sum(map(abs, of)) * unit
+        path = _in_phase(faulted.phases, faulted) / faulted.at.amperes * level
+        blind = self._blind(faulted)
+        sees = not blind and abs(total) > CANCELLED * gross
         return Relay(
             self.place.item.name, bus, phases, terms, total,
-            infeed_factor=infeed, impedance=impedance,
+            infeed_factor=path / total if sees else None,
+            impedance=None if blind else self._impedance(faulted, phases, gross),
+            parallel=count, blind=blind,
         )  # fmt: skip
 
     def _own(self) -> Numbers:
@@ -133,18 +160,25 @@ class RelayFinder:
             return 0j
         return complex(found.own[of.source(injection(bus))])
 
-    def _seen(
-        self, faulted: Faulted, phases: Phases, total: complex, unit: float, of: Sequence
-    ) -> tuple[complex | None, complex | None]:
-        gross = sum(map(abs, of)) * unit
-        path = _in_phase(faulted.phases, faulted) / faulted.at.amperes * unit
-        infeed = path / total if abs(total) > CANCELLED * gross else None
+    def _blind(self, faulted: Faulted) -> str:
+        """Why the relay does not look at the fault; empty where it does."""
+        place, bus = self.place, faulted.at.name
+        if not any(faulted.phases):
+            return NO_CURRENT
+        if bus == place.bus:
+            return "the fault is at the relay's own bus"
+        if not self.ahead:
+            return f"{place.item.name} is no way to another bus: no fault lies beyond it"
+        return "" if bus in self.ahead else "the relay looks away from the fault"
+
+    def _impedance(self, faulted: Faulted, phases: Phases, gross: float) -> complex | None:
+        """The apparent impedance (ohm); None where the current of its loop is only rounding."""
         voltages = faulted.bus_voltages(self.place.bus)
         if faulted.fault.type in ("three-phase", "line-ground"):
             across, through = voltages.a, phases.a
         else:
             across, through = voltages.b - voltages.c, phases.b - phases.c
-        return infeed, across / through if abs(through) > CANCELLED * gross else None
+        return across / through if abs(through) > CANCELLED * gross else None
 
 
 def _summed(*parts: Numbers | complex) -> Numbers:

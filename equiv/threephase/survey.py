@@ -13,10 +13,12 @@ from typing import Any, overload
 import numpy as np
 
 from equiv.equations.layout import Numbers
-from equiv.threephase.cases import FaultCase, FaultTerm, Phases
+from equiv.threephase.asymmetry import Asymmetry, asymmetry
+from equiv.threephase.cases import STARS_AND_NETWORK, FaultCase, FaultTerm, Phases, largest_phase
 from equiv.threephase.cases import Sequence as SequenceValues
-from equiv.threephase.casework import REMAINDER, slow_peak_factor, why, x_over_r
+from equiv.threephase.contributions import REMAINDER
 from equiv.threephase.matrices import Matrices
+from equiv.threephase.reasons import why
 from equiv.threephase.sequence.connection import (
     EARTH_FAULTS,
     currents,
@@ -32,24 +34,17 @@ from equiv.threephase.sequence.faulted import (
     unearthed_rise,
 )
 from equiv.threephase.showing.survey_tables import Survey
-from equiv.threephase.standard import asymmetry_factor
 
 
-class OfType:
-    """Faults of one type at all the buses."""
+class TermsOfType:
+    """The currents of faults of one type at all the buses, and their terms."""
 
-    def __init__(
-        self, of: Matrices, fault: Fault, keep: Sequence[bool], reasons: Mapping[str, str]
-    ) -> None:
-        self.of, self.fault, self.reasons = of, fault, reasons
-        self.rows = np.flatnonzero(keep)
-        """The buses that have an answer."""
+    def __init__(self, of: Matrices, fault: Fault) -> None:
+        self.of, self.fault = of, fault
         self.per_volt = currents(
             fault.type, of.z, fault.impedance / of.ohms, fault.ground / of.ohms
         )
         require_bounded(self.per_volt, fault.type, of.buses)
-        slow = scaled_fault(fault, of.slow)
-        self.slow = currents(fault.type, of.z_slow, slow.impedance / of.ohms, slow.ground / of.ohms)
         self.weights = term_weights(fault.type)
 
     @cached_property
@@ -73,20 +68,48 @@ class OfType:
         """The current (A) of the phase that the terms are about."""
         return np.asarray((self.factor * self.of.voltages)[rows])
 
+
+class OfType(TermsOfType):
+    """Faults of one type at all the buses: cases and columns."""
+
+    def __init__(
+        self, of: Matrices, fault: Fault, keep: Sequence[bool], reasons: Mapping[str, str]
+    ) -> None:
+        super().__init__(of, fault)
+        self.reasons = reasons
+        self.rows = np.flatnonzero(keep)
+        """The buses that have an answer."""
+        slow = scaled_fault(fault, of.slow)
+        self.slow = currents(fault.type, of.z_slow, slow.impedance / of.ohms, slow.ground / of.ohms)
+
+    @cached_property
+    def currents(self) -> tuple[Numbers, Numbers]:
+        """Phase and sequence currents (A): three rows, a column a bus."""
+        of = self.of
+        sequence = np.array([column * of.voltages * of.amperes for column in self.per_volt])
+        found = phase_currents(self.fault.type, SequenceValues(*sequence))
+        return np.array([phase + np.zeros(len(of.buses)) for phase in found]), sequence
+
+    @cached_property
+    def largest(self) -> Numbers:
+        """The largest phase current (A) at each bus."""
+        return np.asarray(np.abs(self.currents[0]).max(axis=0))
+
     def phases(self, row: int) -> tuple[Phases, SequenceValues]:
         """Phase and sequence currents (A) at a bus."""
-        unit = complex(self.of.voltages[row]) * float(self.of.amperes[row])
-        of = SequenceValues(*(complex(column[row]) * unit for column in self.per_volt))
-        return phase_currents(self.fault.type, of), of
+        phases, sequence = (of[:, row].tolist() for of in self.currents)
+        return Phases(*phases), SequenceValues(*sequence)
 
-    def ratio_and_peak(self, row: int) -> tuple[float | None, float, float, float]:
-        """X/R, peak factor, peak current and asymmetrical rms at a bus."""
-        one = complex(self.per_volt.positive[row])
-        ratio = x_over_r(1 / one if one else None)
-        kappa = slow_peak_factor(complex(self.slow.positive[row]))
-        largest = max(map(abs, self.phases(row)[0]))
-        asymmetrical = asymmetry_factor(math.inf if ratio is None else ratio) * largest
-        return ratio, kappa, kappa * math.sqrt(2) * largest, asymmetrical
+    def asymmetry(self, row: int) -> Asymmetry:
+        """X/R, peak factor, peak current and first-cycle rms at a bus."""
+        one, slow = self.per_volt.positive[row], self.slow.positive[row]
+        return asymmetry(complex(one), complex(slow), float(self.largest[row]))
+
+    def why(self, row: int) -> tuple[str, ...]:
+        """Why the current at a bus is zero, if it is."""
+        of = self.of
+        voltage, bus = complex(of.voltages[row]), of.buses[row]
+        return why(self.reasons, bus, self.fault.type, voltage, of.z.of(row))
 
     def case(self, row: int) -> FaultCase:
         """The fault at one bus: its currents and its terms."""
@@ -98,12 +121,11 @@ class OfType:
         terms = list(of.groups.of_headings(self.terms(at)[0]))
         left = total - sum(term.contribution for term in terms)
         if not of.superposed and abs(left) > REMAINDER * abs(total):
-            terms.append(FaultTerm("earthing and network", (), left, kind="network"))
-        ratio, kappa, peak, asymmetrical = self.ratio_and_peak(row)
-        reasons = why(self.reasons, bus.name, fault.type, complex(of.voltages[row]), of.z.of(row))
+            terms.append(FaultTerm(STARS_AND_NETWORK, (), left, kind="network"))
+        first = self.asymmetry(row)
         return FaultCase(
-            bus.name, fault.type, bus.volts, phases, 3 * sequence.zero, sequence, ratio, kappa,
-            peak, asymmetrical, tuple(terms), total, reasons=reasons,
+            bus.name, fault.type, bus.volts, phases, 3 * sequence.zero, sequence,
+            *first[:4], tuple(terms), total, reasons=self.why(row), no_peak=first.reason,
             voltages={bus.name: self._voltages(row, phases)},
         )  # fmt: skip
 
@@ -127,17 +149,24 @@ class OfType:
     def survey(self) -> Survey:
         """All the buses as columns."""
         of, rows = self.of, self.rows
-        found = [self.ratio_and_peak(row) for row in rows.tolist()]
+        found = [self.asymmetry(row) for row in rows.tolist()]
+        phases, sequence = (of_all[:, rows] for of_all in self.currents)
         names = [heading.name for heading in of.groups.headings]
+        kinds = [heading.kind for heading in of.groups.headings]
         terms, totals = self.terms(rows), self.totals(rows)
         left = totals - terms.sum(axis=1)
         if not of.superposed and np.any(np.abs(left) > REMAINDER * np.abs(totals)):
-            names.append("earthing and network")
+            names.append(STARS_AND_NETWORK)
+            kinds.append("network")
             terms = np.column_stack([terms, left])
         phase = "a" if self.fault.type in ("three-phase", "line-ground") else "b"
+        zero = rows[totals == 0].tolist()
+        reasons = [(of.buses[row], words) for row in zero for words in self.why(row)]
         return Survey(
             self.fault.type, phase, [of.buses[row] for row in rows.tolist()], names, totals, terms,
-            [each[0] for each in found], [each[2] for each in found],
+            [each.x_over_r for each in found], [each.peak for each in found],
+            3 * sequence[0], [largest_phase(Phases(*each)) for each in phases.T.tolist()], kinds,
+            [each.reason for each in found], reasons,
         )  # fmt: skip
 
 

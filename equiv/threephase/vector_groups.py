@@ -10,6 +10,7 @@ import re
 from equiv.threephase.model import VectorGroup, Winding
 
 _GROUP = re.compile(r"([A-Z])(N?)([a-z])(n?)([0-9]{1,2})")
+_ANY_CASE = re.compile(r"([ydz]n?)([ydz]n?)([0-9]{1,2})", re.IGNORECASE)
 _EVEN = "groups of two stars, of two deltas, or of a zigzag with a delta"
 _ODD = "groups of a star with a delta or a zigzag"
 
@@ -36,6 +37,15 @@ def read_group(text: str) -> VectorGroup | str:
         kinds, parity = (_ODD, "odd") if odd else (_EVEN, "even")
         return f"{text}: {kinds} have {parity} clock numbers"
     return VectorGroup(Winding(high, bool(high_neutral)), Winding(low, bool(low_neutral)), hours)
+
+
+def group_meant(text: str) -> str | None:
+    """The group that a text with capitals and small letters mixed up was meant to be."""
+    match = _ANY_CASE.fullmatch(text)
+    if match is None:
+        return None
+    meant = f"{match[1].upper()}{match[2].lower()}{match[3]}"
+    return meant if meant != text and not isinstance(read_group(meant), str) else None
 
 
 def turned(group: VectorGroup) -> VectorGroup:

@@ -10,7 +10,7 @@ from typing import NamedTuple
 from equiv.analyses.result import Caution, Check
 from equiv.errors import Diagnostic, DoesNotExistError, UsageError
 from equiv.network import Progress
-from equiv.threephase.cases import FaultCase
+from equiv.threephase.cases import FaultCase, largest_phase
 from equiv.threephase.casework import CaseMaker
 from equiv.threephase.coordinates.phase_coordinates import PhaseCoordinates, UnsolvedError
 from equiv.threephase.fault_cautions import CHECKED_UP_TO
@@ -22,6 +22,7 @@ from equiv.threephase.sequence.connection import EARTH_FAULTS
 from equiv.threephase.sequence.faulted import AtBus, Fault
 from equiv.threephase.sequence.findings import no_earth_path
 from equiv.threephase.sequence.solve import SystemSolution
+from equiv.threephase.showing.setting import source_words
 from equiv.threephase.showing.survey_tables import Survey
 from equiv.threephase.survey import OfType, SurveyCases, Surveys
 
@@ -117,7 +118,10 @@ class Work:
         asked.progress("faults", len(asked.buses), len(asked.buses))
         surveys = _columns(cases, asked.faults) if survey else ()
         return Found(
-            cases, surveys, checks_of(system, cases, maker.apart, maker.bolted), again is not None
+            cases,
+            surveys,
+            checks_of(system, asked.view.basis, cases, maker.apart, maker.bolted),
+            again is not None,
         )
 
     def many(self) -> Found:
@@ -143,18 +147,23 @@ def _columns(cases: Sequence[FaultCase], faults: Sequence[Fault]) -> tuple[Surve
     found = []
     for fault in faults:
         mine = [case for case in cases if case.type == fault.type]
-        names = list(dict.fromkeys(term.source for case in mine for term in case.terms))
+        kinds = {source_words(term): term.kind for case in mine for term in case.terms}
+        names = list(kinds)
         at = {name: n for n, name in enumerate(names)}
         terms = np.zeros((len(mine), len(names)), complex)
         for row, case in enumerate(mine):
             for term in case.terms:
-                terms[row, at[term.source]] += term.contribution
+                terms[row, at[source_words(term)]] += term.contribution
         if mine:
             found.append(
                 Survey(
                     fault.type, mine[0].phase, [case.bus for case in mine], names,
                     np.array([case.total for case in mine]), terms,
                     [case.x_over_r for case in mine], [case.peak for case in mine],
+                    np.array([case.earth for case in mine]),
+                    [largest_phase(case.phases) for case in mine], list(kinds.values()),
+                    [case.no_peak for case in mine],
+                    [(case.bus, words) for case in mine for words in case.reasons],
                 )
             )  # fmt: skip
     return tuple(found)

@@ -36,6 +36,10 @@ CALLS: Mapping[str, list[Callable[[], object]]] = {
         lambda: load(CASES / "not-three-phase.equiv"),
         lambda: require_system(parse("resistor R1 a gnd 5 ohm", name="divider.equiv")),
     ],
+    "unknown-keyword": [
+        lambda: load(CASES / "unknown-keyword.equiv"),
+        lambda: parse("Three-phase 50 Hz\nbus A 11 kV\ninfeed U A level 9 MVA", name="text"),
+    ],
     "unknown-given": [lambda: parse(SYSTEM, given={"tial": "6 ohm"})],
 }
 """Calls that are wrong in themselves."""

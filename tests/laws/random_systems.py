@@ -90,7 +90,7 @@ class Cable(Link):
         return None if found is None else at(found, view)
 
     def charging(self, sequence: int, view: View) -> complex:
-        if view.basis != "superposition":
+        if sequence and view.basis == "equivalent-source":
             return 0j
         return 1j * self.b[1 if sequence else 0] * view.reactances
 

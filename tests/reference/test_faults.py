@@ -5,12 +5,14 @@ from __future__ import annotations
 import cmath
 import math
 import random
+from dataclasses import replace
 
 import numpy as np
 import pytest
 from laws.random_systems import Cable, Machine, system
 
 import equiv
+from equiv.equations.layout import Numbers
 from equiv.threephase import standard
 from equiv.threephase.cases import FaultCase, Phases, Sequence
 from equiv.threephase.fault import fault
@@ -374,6 +376,31 @@ def test_d31_voltage_factors() -> None:
 @pytest.mark.parametrize("seed", range(5))
 def test_a_z_bus_of_numpy(seed: int) -> None:
     """Z = Y⁻¹ of each sequence, written here: currents, voltages, line currents at every bus."""
+    grown, y, injected, (i, j) = meshed(seed)
+    z_bus = {s: np.linalg.inv(y[s]) for s in (0, 1, 2)}
+    before = z_bus[1] @ injected
+    found = {(c.bus, c.type): c for c in fault(grown, branches=["L0"]).cases}
+    first_line = grown.items["L0"].z[1]  # type: ignore[attr-defined]
+    for n, bus in enumerate(grown.buses):
+        z1, z2, z0 = (z_bus[s][n, n] for s in (1, 2, 0))
+        case = found[bus, "line-ground"]
+        current = before[n] / (z1 + z2 + z0)
+        assert case.phases.a == pytest.approx(3 * current, rel=1e-9)
+        for m, other in enumerate(grown.buses):
+            of = Sequence(
+                -z_bus[0][m, n] * current,
+                before[m] - z_bus[1][m, n] * current,
+                -z_bus[2][m, n] * current,
+            )
+            assert case.voltages[other] == pytest.approx(phases(of), abs=1e-6)
+        # bolted three-phase: the current of the first line, from the difference of voltages
+        drop = [before[m] - z_bus[1][m, n] * before[n] / z1 for m in (i, j)]
+        relay = found[bus, "three-phase"].relays[0]
+        assert relay.total == pytest.approx((drop[0] - drop[1]) / first_line, rel=1e-9)
+
+
+def meshed(seed: int) -> tuple[OneLine, dict[int, Numbers], Numbers, tuple[int, int]]:
+    """A random system of one level, its admittance matrices, EMF currents, ends of line L0."""
     chance, count = random.Random(seed), 9
     buses = [Bus(f"B{n}", 20e3) for n in range(count)]
     y = {s: np.zeros((count, count), complex) for s in (0, 1, 2)}
@@ -398,24 +425,5 @@ def test_a_z_bus_of_numpy(seed: int) -> None:
         for s, z in ((0, z0 + 1.5), (1, z1), (2, z2)):
             y[s][n, n] += 1 / z
         injected[n] = emf / z1
-    z_bus = {s: np.linalg.inv(y[s]) for s in (0, 1, 2)}
-    before = z_bus[1] @ injected
-    found = {(c.bus, c.type): c for c in fault(system(*items), branches=["L0"]).cases}
-    i, j = edges[0]
-    first_line = items[0].z[1]
-    for n, bus in enumerate(buses):
-        z1, z2, z0 = (z_bus[s][n, n] for s in (1, 2, 0))
-        case = found[bus.name, "line-ground"]
-        current = before[n] / (z1 + z2 + z0)
-        assert case.phases.a == pytest.approx(3 * current, rel=1e-9)
-        for m, other in enumerate(buses):
-            of = Sequence(
-                -z_bus[0][m, n] * current,
-                before[m] - z_bus[1][m, n] * current,
-                -z_bus[2][m, n] * current,
-            )
-            assert case.voltages[other.name] == pytest.approx(phases(of), abs=1e-6)
-        # bolted three-phase: the current of the first line, from the difference of voltages
-        drop = [before[m] - z_bus[1][m, n] * before[n] / z1 for m in (i, j)]
-        relay = found[bus.name, "three-phase"].relays[0]
-        assert relay.total == pytest.approx((drop[0] - drop[1]) / first_line, rel=1e-9)
+    grown = replace(system(*items), buses={bus.name: bus for bus in buses})
+    return grown, y, injected, edges[0]

@@ -20,9 +20,10 @@ import numpy as np
 
 from equiv.equations.layout import Numbers
 from equiv.threephase.coordinates.windings import BALANCED, arranged
+from equiv.threephase.entered import scaled
 from equiv.threephase.model import Link, OneLine, Shunt, Transformer, View
 from equiv.threephase.sequence.displacement import no_load_angles, turn
-from equiv.threephase.sequence.sequences import emf, ohms_of, scaled, there
+from equiv.threephase.sequence.sequences import emf, ohms_of, there
 
 EARTH = -1
 _MODES = np.vander(np.exp(2j * np.pi * np.arange(3) / 3), 3, increasing=True)
@@ -103,7 +104,7 @@ class Conductors:
         if neutral is None:
             return node, []
         one = np.ones((1, 1))
-        z = scaled(neutral, self.view) / base
+        z = scaled(neutral, self.view.reactances) / base
         return node, [Branch3((node,), one, z * one, one, np.zeros(1), True)]
 
     def _shunt(self, item: Shunt) -> Iterator[Branch3]:

@@ -11,6 +11,8 @@ Source: three-phase multiports: G. Kron, Tensor Analysis of Networks (1939), fro
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import replace
+from functools import cached_property
 from typing import NamedTuple
 
 import numpy as np
@@ -20,7 +22,7 @@ from equiv.threephase.cases import Phases
 from equiv.threephase.coordinates.conductors import EARTH, Branch3, Conductors
 from equiv.threephase.coordinates.modes import RANK, modes_of
 from equiv.threephase.coordinates.windings import BALANCED
-from equiv.threephase.model import OneLine, View
+from equiv.threephase.model import OneLine, Shunt, View
 from equiv.threephase.sequence.displacement import turn
 from equiv.threephase.sequence.faulted import Fault
 from equiv.threephase.sequence.sequences import amperes_of, ohms_of
@@ -37,7 +39,7 @@ class Again(NamedTuple):
 
     currents: Phases
     voltages: Mapping[str, Phases]
-    """At each bus; in the equivalent-source basis what the fault takes from them."""
+    """At each bus."""
     delivered: Mapping[str, Phases]
     """What each item at one bus delivers into it."""
 
@@ -52,6 +54,7 @@ class PhaseCoordinates:
     def __init__(self, system: OneLine, view: View, faults: Sequence[str]) -> None:
         self.system, self.view = system, view
         self.lines = Conductors(system, view)
+        self.faults = tuple(faults)
         self.first = {bus: 1 + 3 * n for n, bus in enumerate(faults)}
         p, q, incidence, emfs = _stacked(self.lines.branches, self.lines.node_count)
         self.modes = modes_of(self.lines.branches, incidence)
@@ -61,6 +64,7 @@ class PhaseCoordinates:
         self.x = self._solved(p, q, incidence, emfs)
         self.to_earth = self.modes.across.conj().T @ self.x[: self.count]
         """The currents to earth that Kirchhoff's law for each mode adds up."""
+        self._profiles: dict[str, Numbers] = {}
 
     def _solved(self, p: Numbers, q: Numbers, incidence: Numbers, emfs: Numbers) -> Numbers:
         """The response to all EMFs (first), to 1 A into each phase of each bus, to each mode."""
@@ -84,25 +88,54 @@ class PhaseCoordinates:
 
     def fault(self, bus: str, fault: Fault) -> Again:
         """A fault at a bus: its own equations, and Kirchhoff's law for each mode."""
-        at, here = self.system.buses[bus], list(self.lines.at(bus))
-        angle = turn(self.lines.angles[bus])
-        of_v, of_i = fault_equations(fault, ohms_of(at, self.system.base))
+        angle, here = turn(self.lines.angles[bus]), list(self.lines.at(bus))
+        of_v, of_i = fault_equations(fault, ohms_of(self.system.buses[bus], self.system.base))
+        profile = self._profile(bus)
+        currents, state = self._imposed(bus, of_v, of_i, -of_v @ profile[here])
+        state[self.count :][: len(profile)] += profile
+        return self._again(currents / angle, bus, state / angle)
+
+    @cached_property
+    def idle(self) -> PhaseCoordinates:
+        """The system without what stands at one bus."""
+        items = {n: i for n, i in self.system.items.items() if not isinstance(i, Shunt)}
+        return PhaseCoordinates(replace(self.system, items=items), self.view, self.faults)
+
+    def _profile(self, bus: str) -> Numbers:
+        """The voltages before a fault that no EMF makes: those of c·Un/√3 at the bus, no load."""
+        if self.view.basis == "superposition" or self._floats(bus):
+            return np.zeros(3 * len(self.system.buses), complex)
+        if bus not in self._profiles:
+            at = self.system.buses[bus]
+            c = voltage_factor(at.volts, self.view.case, at.tolerance)
+            driven = c * turn(self.lines.angles[bus]) * BALANCED
+            _, state = self.idle._imposed(bus, np.eye(3), np.zeros((3, 3)), driven)
+            self._profiles[bus] = state[self.idle.count :][: 3 * len(self.system.buses)]
+        return self._profiles[bus]
+
+    def _floats(self, bus: str) -> bool:
+        """Whether nothing holds the voltages of a bus, not even those between its phases."""
+        held = self.modes.shapes.shape[1] - self.modes.free
+        seen = self._chosen(np.eye(3), list(self.lines.at(bus))).shape[1]
+        return bool(seen - held > 1)
+
+    def _imposed(
+        self, bus: str, of_v: Numbers, of_i: Numbers, given: Numbers
+    ) -> tuple[Numbers, Numbers]:
+        """Currents i out of a bus, and the state, with of_v·v + of_i·i given at the bus."""
+        here = list(self.lines.at(bus))
         chosen = self._chosen(of_v, here)
         ports, modes = slice(self.first[bus], self.first[bus] + 3), slice(self.modes_from, None)
         at_bus, law = self.x[self.count :][here], chosen.conj().T @ self.to_earth
-        open_voltage = at_bus[:, 0]
-        if self.view.basis == "equivalent-source":
-            c = voltage_factor(at.volts, self.view.case, at.tolerance)
-            open_voltage = c * angle * BALANCED
         # unknown are the currents out of the bus and the modes
         matrix = np.block([
             [of_i - of_v @ at_bus[:, ports], of_v @ at_bus[:, modes] @ chosen],
             [(self.modes.shapes[here] @ chosen).conj().T - law[:, ports], law[:, modes] @ chosen],
         ])  # fmt: skip
-        found = _solve_small(matrix, -np.concatenate([of_v @ open_voltage, law[:, 0]]))
+        found = _solve_small(matrix, np.concatenate([given - of_v @ at_bus[:, 0], -law[:, 0]]))
         moved = chosen @ found[3:]
         state = self.x[:, 0] - self.x[:, ports] @ found[:3] + self.x[:, modes] @ moved
-        return self._again(found[:3] / angle, bus, state / angle)
+        return found[:3], state
 
     def _chosen(self, of_v: Numbers, here: Sequence[int]) -> Numbers:
         """The modes that a fault moves, in columns: all that are held, and of the free ones those

@@ -19,7 +19,7 @@ class Infeed(Kind, Shunt):
 
     Written:  infeed NAME BUS level LEVEL x/r R z0/z1 K, or infeed NAME BUS z1 OHMS z0 OHMS
     Equation: |Z1| = Un²/S"k (times c by IEC 60909-0), Z2 = Z1
-    Notes:    `level` and `level1` are the three-phase and the line-to-ground fault levels, in MVA
+    Notes:    `level` and `level1` are the three-phase and the line-to-earth fault levels, in MVA
               or kA. Without x/r the impedance is a reactance alone, unless it is entered as complex.
               The zero sequence is given by `z0/z1`, by `level1` or by `z0`, its angle by `x0/r0`
               (else that of x/r); without any, earth faults that it reaches have no answer.
@@ -105,9 +105,15 @@ class Infeed(Kind, Shunt):
             return by_ratio(times * abs(positive), ratio.real)
         if self.level1 is None:
             return None
-        whole = 3 * self._factor(view) * self.bus.volts**2 / self._power(self.level1)
+        # c goes with both levels or with none: z1 in ohm is not multiplied by it
+        whole = self._loop_of_level1() * (1.0 if self.level is None else self._factor(view))
         turn = cmath.phase(positive) if ratio is None else math.atan(ratio.real)
         return cmath.rect(_remainder(whole, 2 * positive, turn), turn)
+
+    def _loop_of_level1(self) -> float:
+        """|Z1 + Z2 + Z0| (ohm) of the line-to-earth level, without c."""
+        assert self.level1 is not None
+        return 3 * self.bus.volts**2 / self._power(self.level1)
 
     def _entered(self, value: Entered | None) -> complex:
         assert value is not None
@@ -125,12 +131,9 @@ class Infeed(Kind, Shunt):
     def _too_high(self) -> Iterator[Problem]:
         if self.level is None and self.z1 is None:
             return
-        assert self.level1 is not None
-        view = View()
-        whole = 3 * self._factor(view) * self.bus.volts**2 / self._power(self.level1)
-        if whole < 2 * abs(self._positive(view)):
+        if self._loop_of_level1() < 2 * abs(self._positive(View())):
             message = "level1 is so high that z0 were negative"
-            hint = "the line-to-ground level is at most one and a half times the three-phase one"
+            hint = "the line-to-earth level is at most one and a half times the three-phase one"
             yield Problem("bad-level", message, "level1", hint)
 
 

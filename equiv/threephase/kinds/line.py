@@ -25,7 +25,8 @@ class Line(Kind, Link):
               b0 in S. `count` lines are in parallel. Without z0, earth faults beyond it have no
               answer. A real z1 is a resistance, unless x/r stands beside it. Resistances are taken as
               they are entered: at 20 degC for the largest currents, at the conductor's temperature
-              at the end of the fault for the smallest.
+              at the end of the fault for the smallest. b1 is
+              not in the equivalent-source method, b0 is.
     Example:  line C1 MAIN > PUMP 1.2 km z1 0.161+0.093j ohm/km z0 0.72+0.28j ohm/km count 2
     Source:   IEC 60909-0:2016, 6.4 (from memory).
     """
@@ -66,7 +67,7 @@ class Line(Kind, Link):
 
     def charging(self, sequence: int, view: View) -> complex:
         entered = self.b1 if sequence else self.b0
-        if entered is None:
+        if entered is None or (sequence and view.basis == "equivalent-source"):
             return 0j
         return scaled(1j * self._whole(entered).real, view.reactances) * self.count
 

@@ -24,7 +24,7 @@ class Transformer(Kind, TwoWindings):
               first, as on the plate, wherever A and B are. `neutral1` and `neutral2` are solid, open
               (where not given) or an impedance. z0 is that of one phase's windings, z where it is not
               given, with the ratio X/R of z. A z in ohm is seen from A's side. `tap 2.5%` raises U1
-              by so much; z in per cent stays. By IEC 60909-0 it is multiplied by K_T; the
+              by so much; z stays as it is entered, in per cent or in ohm. By IEC 60909-0 it is multiplied by K_T; the
               neutrals' impedances are not.
     Example:  transformer T1 GRID > MAIN 16 MVA 33/11 kV z 9.6% x/r 18 vector Dyn11 neutral2 solid
     Source:   IEC 60909-0:2016, 6.3; IEC 60076-1:2011, clause 7 (from memory).
@@ -69,8 +69,8 @@ class Transformer(Kind, TwoWindings):
 
     @property
     def rated(self) -> tuple[float, float]:  # type: ignore[override]
-        first, second = self.rated_voltages
-        return first.real * self._tap, second.real
+        first, second = self._plate
+        return first * self._tap, second
 
     @property
     def power(self) -> float:
@@ -79,8 +79,8 @@ class Transformer(Kind, TwoWindings):
 
     def series(self, sequence: int, view: View) -> complex:
         entered = self.z if sequence or self.z0 is None else self.z0
-        base = self.rated[0] ** 2 / self.power
-        impedance = self._per_unit(entered) * base * self._correction(view)
+        first = (self.rated if entered.unit in RELATIVE else self._plate)[0]
+        impedance = self._per_unit(entered) * first**2 / self.power * self._correction(view)
         return scaled(impedance, view.reactances) / self.count
 
     def neutral(self, side: int) -> complex | None:
@@ -103,6 +103,12 @@ class Transformer(Kind, TwoWindings):
             yield Problem("bad-tap", "a tap lies within 50 % up or down", "tap")
 
     @property
+    def _plate(self) -> tuple[float, float]:
+        """The rated voltages (V) without the tap."""
+        first, second = self.rated_voltages
+        return first.real, second.real
+
+    @property
     def _tap(self) -> float:
         return 1.0 if self.tap is None else 1.0 + self.tap.real
 
@@ -110,7 +116,7 @@ class Transformer(Kind, TwoWindings):
         """An impedance in per unit of the rating, with its angle."""
         size = entered.number
         if entered.unit not in RELATIVE:
-            size *= self.power / self.rated_voltages[0].real ** 2
+            size *= self.power / self._plate[0] ** 2
         return with_ratio(size, self.x_over_r)
 
     def _correction(self, view: View) -> float:

@@ -132,7 +132,7 @@ def _items(
         if first is not draft:
             mistake = Mistake(
                 "name-taken",
-                f"the name {draft.name} is taken by another {first.kind.kind}",
+                f"there is already an item called {draft.name}",
                 draft.places["name"],
                 related=((first.statement.span(first.places["name"]), "first used here"),),
             )

@@ -14,12 +14,14 @@ from equiv.errors import nearest
 from equiv.language.mistakes import Mistake
 from equiv.language.names import require_name
 from equiv.language.scope import Scope
-from equiv.language.words import Statement, Words
+from equiv.language.slips import number_meant
+from equiv.language.words import Statement, Word, Words
 from equiv.threephase.declaring import Field, Kind, Problem, make
 from equiv.threephase.entered import OPEN, SOLID, Earthing, Entered, Factor
 from equiv.threephase.language.quantities import ALL_UNITS, LaterEntered, Wanted, read_entered
+from equiv.threephase.language.trade_words import earthing_meant, field_meant
 from equiv.threephase.model import Bus, Item
-from equiv.threephase.vector_groups import read_group
+from equiv.threephase.vector_groups import group_meant, read_group
 
 Place = tuple[int, int]
 MOST_PARALLEL = 10_000
@@ -31,10 +33,18 @@ class LaterEarthing(NamedTuple):
     """An earthing whose impedance is known when the parameters are."""
 
     impedance: LaterEntered
+    word: Word
 
     def evaluate(self, scope: Scope) -> Earthing:
         """How the star point is earthed."""
-        return Earthing(self.impedance.evaluate(scope))
+        try:
+            return Earthing(self.impedance.evaluate(scope))
+        except Mistake as mistake:
+            near = earthing_meant(self.word.text) or nearest(self.word.text, ("solid", "open"))
+            if mistake.code != "unknown-parameter" or near is None:
+                raise
+            message = f"expected solid, open or an impedance; found {self.word.text}"
+            raise Mistake("not-a-choice", message, self.word.place, hint=near) from None
 
 
 class LaterFactor(NamedTuple):
@@ -88,7 +98,7 @@ def read_item(words: Words, kind: type[Kind]) -> Draft:
     draft = Draft(kind, name, buses, {}, places, words.statement)
     keywords = kind.words
     for field in kind.positional:
-        if words.peek() and words.peek() not in keywords:
+        if words.peek() and words.peek() not in keywords and not _next_field(words, field):
             _read(words, field, draft)
         elif field.needed:
             what = f"{field.shown} ({' or '.join(filter(None, field.units))})"
@@ -99,9 +109,14 @@ def read_item(words: Words, kind: type[Kind]) -> Draft:
         _keyword(words, fields, keywords, draft)
     for field in kind.fields:
         if field.needed and field.name not in draft.values:
-            message = f"expected {field.keyword} in the statement of a {kind.kind}"
+            message = f"expected {field.keyword} in this {kind.kind}'s statement"
             raise Mistake("missing-word", message, words.next.place, hint=hint)
     return draft
+
+
+def _next_field(words: Words, field: Field) -> bool:
+    """Whether the voltages of both sides stand where another value is expected."""
+    return field.form == "number" and _SIDES.match(words.peek()) is not None
 
 
 def _buses(words: Words, kind: type[Kind], places: dict[str, Place], hint: str) -> tuple[str, ...]:
@@ -117,7 +132,7 @@ def _buses(words: Words, kind: type[Kind], places: dict[str, Place], hint: str) 
         places["second bus"] = words.next.place
         names.append(words.name("a bus", hint))
     elif words.peek() == ">":
-        message = f"a {kind.kind} is at one bus"
+        message = f"expected one bus of this {kind.kind}; found >"
         raise Mistake("wrong-connection", message, words.next.place, hint=hint)
     return tuple(names)
 
@@ -129,8 +144,10 @@ def _keyword(
     word = words.take("a keyword")
     text = word.text
     if text not in keywords:
-        hint = nearest(text, keywords) or f"its words: {', '.join(keywords)}"
-        message = f"did not expect {text} in the statement of a {draft.kind.kind}"
+        before = "a keyword stands before each value" if text[0].isdigit() else "its words"
+        listed = f"{before}: {', '.join(keywords)}"
+        hint = field_meant(text, keywords) or nearest(text, keywords) or listed
+        message = f"did not expect {text} in this {draft.kind.kind}'s statement"
         raise Mistake("extra-word", message, word.place, hint=hint)
     name = fields[text].name if text in fields else text
     if name in draft.values:
@@ -172,12 +189,9 @@ def _earthing(words: Words, field: Field) -> Earthing | LaterEarthing:
     if words.peek() in ("solid", "open"):
         return SOLID if words.take("solid or open").text == "solid" else OPEN
     word = words.next
-    if word.text[:1].isalpha() and (near := nearest(word.text, ("solid", "open"))):
-        message = f"expected solid, open or an impedance; found {word.text}"
-        raise Mistake("not-a-choice", message, word.place, hint=near)
     wanted = Wanted("solid, open or an impedance", field.units, True, "not negative")
     found = read_entered(words, wanted)
-    return LaterEarthing(found) if isinstance(found, LaterEntered) else Earthing(found)
+    return LaterEarthing(found, word) if isinstance(found, LaterEntered) else Earthing(found)
 
 
 def _factor(words: Words, field: Field) -> Factor | LaterFactor:
@@ -201,7 +215,8 @@ def _voltages(words: Words, field: Field) -> tuple[Entered, Entered]:
     match = _SIDES.fullmatch(text)
     if match is None:
         message = f"expected the rated voltages of both sides; found {words.written(place)}"
-        raise Mistake("missing-rating", message, place, hint="as in: 33/11 kV, or 11/0.4 kV")
+        hint = number_meant(text) or "as in: 33/11 kV, or 11/0.4 kV"
+        raise Mistake("missing-rating", message, place, hint=hint)
     first, first_unit, second, second_unit = match.groups()
     sides = []
     for number, unit in ((first, first_unit or second_unit), (second, second_unit)):
@@ -221,7 +236,9 @@ def _group(words: Words, field: Field) -> Any:
     word = words.take("a vector group, as in Dyn11")
     found = read_group(word.text)
     if isinstance(found, str):
-        hint = "by IEC 60076-1: the high side's letter, the low side's, the clock, as in Dyn11"
+        form = "by IEC 60076-1: the high side's letter, the low side's, the clock, as in Dyn11"
+        meant = group_meant(word.text)
+        hint = f"did you mean {meant}? capitals are the high side's" if meant else form
         raise Mistake("bad-vector-group", found, word.place, hint=hint)
     return found
 

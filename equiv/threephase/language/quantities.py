@@ -40,6 +40,12 @@ POWER_UNITS: dict[str, tuple[str, int]] = {
 MOST_EXPONENT = 30
 """Values lie between 1e-30 and 1e30 in SI units, or are zero: their squares can be calculated with."""
 
+_AT_FREQUENCY = {
+    "F": "write ωC in uS/km: 1 uF/km is 314 uS/km at 50 Hz, 377 uS/km at 60 Hz",
+    "H": "write ωL in ohm/km: 1 mH/km is 0.314 ohm/km at 50 Hz, 0.377 ohm/km at 60 Hz",
+}
+"""What stands for capacitance and inductance, which are given as they are at the frequency."""
+
 _ONTO = re.compile(
     r"(?<=[0-9.j)])(?:[fpnuµμmkMGT]?(?:VA|var|(?:ohm|Ω|S)/km)|km|pu|(?<=\))%|(?<=j)%)$"
 )
@@ -173,15 +179,23 @@ def _require_no_other_unit(
     bare = isinstance(written, Amount) and written.unit is None and unit is None
     if bare and "" not in wanted.units and words.peek():
         word = words.next
+        if word.text[0] in "+-":
+            hint = "a complex number is written without blanks: 0.12+0.1j"
+            message = f"did not expect {word.text} behind {wanted.name}"
+            raise Mistake("extra-word", message, word.place, hint=hint)
         _require_unit(word.text, word.place)
 
 
 def _require_unit(text: str, place: tuple[int, int]) -> None:
     """A word that is nearly a unit must be one."""
+    if text in ALL_UNITS:
+        return
+    if text.endswith(("F/km", "H/km")):
+        raise Mistake("unknown-unit", f"{text} is not a unit", place, hint=_AT_FREQUENCY[text[-4]])
     same = [unit for unit in (*UNITS, *POWER_UNITS) if unit.casefold() == text.casefold()]
     usual = next((unit for unit in same if unit[0] in "kM"), same[0]) if same else None
     near = f"did you mean {usual}?" if usual else nearest(text, ALL_UNITS)
-    if near and text not in ALL_UNITS:
+    if near:
         raise Mistake("unknown-unit", f"{text} is not a unit", place, hint=near)
 
 
@@ -189,7 +203,7 @@ def _split(words: Words, units: tuple[str, ...]) -> None:
     """Take a unit of power systems off the number that it is written onto."""
     text = words.peek()
     number = NUMBER.match(text)
-    if number and (onto := text[number.end() :]).isalpha() and len(onto) > 1:
+    if number and (onto := text[number.end() :]).removesuffix("/km").isalpha() and len(onto) > 1:
         _require_unit(onto, (words.next.at + number.end(), len(onto)))
     match = _ONTO.search(text) or (_METRES.search(text) if "m" in units else None)
     if match:
@@ -249,7 +263,9 @@ def _fitted(amount: Amount, wanted: Wanted, place: tuple[int, int], text: str) -
         )
     if unit not in wanted.units:
         said = "" if text.endswith(unit) else f" in {NAMES.get(unit, unit)}"
-        raise Mistake("wrong-unit", f"found {text}{said}, expected {_units_words(wanted)}", place)
+        hint = _AT_FREQUENCY.get(unit) if any(u.endswith("/km") for u in wanted.units) else None
+        message = f"found {text}{said}, expected {_units_words(wanted)}"
+        raise Mistake("wrong-unit", message, place, hint=hint)
     _require_bounds(value, wanted, place, text)
     return Entered(value, unit)
 

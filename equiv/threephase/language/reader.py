@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import replace
 from decimal import localcontext
@@ -21,11 +22,12 @@ from equiv.language.reader import Reader
 from equiv.language.reports import Argument
 from equiv.language.words import Statement, Words
 from equiv.network import Origin
-from equiv.threephase.kinds import KINDS
+from equiv.threephase.kinds import KINDS, Kind
 from equiv.threephase.language.assembly import assembled
 from equiv.threephase.language.drafts import Draft, read_item
 from equiv.threephase.language.quantities import read_power_amount
 from equiv.threephase.language.statements import HANDLERS, BusDraft, Said
+from equiv.threephase.language.trade_words import field_meant, kind_meant
 from equiv.threephase.model import OneLine
 
 _WORD_BY_WORD = 2**62
@@ -52,11 +54,29 @@ class SystemReader(Reader):
             if len(self.drafts) >= MOST_ELEMENTS:
                 message = f"more than {MOST_ELEMENTS} items"
                 raise Mistake("too-many-elements", message, (0, len(statement.text)))
-            words = Words(statement)
-            words.taken = 1
-            self.drafts.append(read_item(words, kind))
+            self.drafts.append(read_item(_words(statement, kind), kind))
         else:
             raise _unknown(first, statement)
+
+
+def _words(statement: Statement, kind: type[Kind]) -> Words:
+    """The words of an item's statement, the first taken."""
+    try:
+        words = Words(statement)
+    except Mistake as mistake:
+        raise _symbol(mistake, statement, kind) or mistake from None
+    words.taken = 1
+    return words
+
+
+def _symbol(mistake: Mistake, statement: Statement, kind: type[Kind]) -> Mistake | None:
+    """That a quotation mark is part of a symbol, as in x"d."""
+    for match in re.finditer(r"\S+", statement.text):
+        hint = field_meant(match[0], kind.words)
+        if hint and match.start() <= mistake.place[0] < match.end():
+            message = f"did not expect {match[0]} in this {kind.kind}'s statement"
+            return Mistake("extra-word", message, (match.start(), len(match[0])), hint=hint)
+    return None
 
 
 def _unknown(first: str, statement: Statement) -> Mistake:
@@ -66,7 +86,8 @@ def _unknown(first: str, statement: Statement) -> Mistake:
         hint = f"write {first.lower()}"
         message = f"keywords are lower case; found {first}"
         return Mistake("keyword-in-capitals", message, place, hint=hint)
-    if first in ELEMENTS or first in OF_NETWORKS:
+    meant = kind_meant(first)
+    if meant is None and (first in ELEMENTS or first in OF_NETWORKS):
         message = f"{first} is for networks; this file says three-phase"
         hint = "equiv kinds three-phase lists what it may hold"
         return Mistake("not-three-phase", message, place, hint=hint)
@@ -74,8 +95,8 @@ def _unknown(first: str, statement: Statement) -> Mistake:
         "unknown-keyword",
         f"expected a kind of item or a statement; found {first}",
         place,
-        hint="equiv kinds three-phase lists them",
-        near=(first, known),
+        hint=meant or "equiv kinds three-phase lists them",
+        near=None if meant else (first, known),
     )
 
 

@@ -72,7 +72,7 @@ def three_phase(reading: SystemReading, body: Body, statement: Statement) -> Non
     words = opened(statement)
     place = words.next.place
     found = read_frequency(words)
-    words.end()
+    words.end(near=("Hz", "kHz", "rad/s"))
     if not isinstance(found, Frequency) or found.value <= 0:
         raise Mistake("bad-frequency", "expected a frequency, as in 50 Hz", place)
     value = Entered(found.value, found.unit)
@@ -99,7 +99,7 @@ def given(reading: SystemReading, body: Body, statement: Statement) -> None:
 
 @_register("bus")
 def bus(reading: SystemReading, body: Body, statement: Statement) -> None:
-    """bus NAME 11 kV: a bus and its nominal voltage, line to line; below 1 kV perhaps tolerance 10%."""
+    """bus NAME 11 kV: a bus and its nominal voltage, line to line; below 1 kV optionally tolerance 10%."""
     words = opened(statement)
     places = {"name": words.next.place}
     name = require_bus_name(words)

@@ -58,12 +58,7 @@ def composite(
     """
     diagram = require_system(system)
     view = View(case=view.case) if view else View()
-    if bus not in diagram.buses:
-        message = f"there is no bus called {bus}"
-        raise UsageError(Diagnostic("unknown-bus", message, hint=nearest(bus, diagram.buses)))
-    if type not in TYPES:
-        message = f"type is {type}; it is one of {', '.join(TYPES)}"
-        raise UsageError(Diagnostic("unknown-choice", message, hint=nearest(type, TYPES)))
+    _require_known(diagram, bus, type)
     no_load_angles(diagram)
     ohms = ohms_of(diagram.buses[bus], diagram.base)
     wanted = {"three-phase": (1,), "line-line": (1, 2)}.get(type, (1, 2, 0))
@@ -80,19 +75,12 @@ def composite(
     mark = _mark(elements)
     for element in joints:
         elements[f"{element.name}{mark}"] = element._replace(name=f"{element.name}{mark}")
-    finds = tuple(
-        Find(
-            Quantity("I", (f"{element.name}{mark}",)),
-            f"{NAMES[int(element.name[-1])]}-sequence current into the fault, per unit",
-        )
-        for element in joints
-    )
     return replace(
         parts[1].network,
         elements=elements,
         title=f"{diagram.title or 'System'}: {type} fault at {bus}",
         notes=(*_notes(diagram, bus, type), *diagram.notes),
-        finds=finds,
+        finds=tuple(_find(element.name, mark) for element in joints),
     )
 
 
@@ -112,6 +100,21 @@ def isolate(
     """
     network = composite(system, bus, type, fault_impedance, ground_impedance, view)
     return Isolation(network, source=source, subcircuit=network.isolate(source))
+
+
+def _find(joint: str, mark: str) -> Find:
+    """The question for the current of a joint."""
+    words = f"{NAMES[int(joint[-1])]}-sequence current into the fault, per unit"
+    return Find(Quantity("I", (f"{joint}{mark}",)), words)
+
+
+def _require_known(system: OneLine, bus: str, type: str) -> None:
+    if bus not in system.buses:
+        message = f"there is no bus called {bus}"
+        raise UsageError(Diagnostic("unknown-bus", message, hint=nearest(bus, system.buses)))
+    if type not in TYPES:
+        message = f"type is {type}; it is one of {', '.join(TYPES)}"
+        raise UsageError(Diagnostic("unknown-choice", message, hint=nearest(type, TYPES)))
 
 
 def _joined(nodes: dict[int, str], type: str, fault: complex, ground: complex) -> list[Element]:

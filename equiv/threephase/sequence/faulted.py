@@ -16,6 +16,7 @@ import numpy as np
 from equiv.equations.layout import Numbers
 from equiv.errors import Diagnostic, NoUniqueSolutionError
 from equiv.threephase.cases import Phases, Sequence
+from equiv.threephase.entered import scaled
 from equiv.threephase.model import Bus
 from equiv.threephase.sequence.connection import (
     EARTH_FAULTS,
@@ -27,7 +28,7 @@ from equiv.threephase.sequence.connection import (
 )
 from equiv.threephase.sequence.displacement import rotation
 from equiv.threephase.sequence.networks import injection
-from equiv.threephase.sequence.sequences import amperes_of, ohms_of, scaled
+from equiv.threephase.sequence.sequences import amperes_of, ohms_of
 from equiv.threephase.sequence.solve import SystemSolution
 from equiv.threephase.standard import voltage_factor
 
@@ -66,12 +67,15 @@ class AtBus:
 
     @cached_property
     def before(self) -> Numbers:
-        """The voltage of every bus before the fault, per unit."""
+        """The voltage of every bus before the fault, per unit.
+
+        Of the equivalent source: c at the faulted bus, elsewhere what the ratios make of it.
+        """
         positive = self.solution.of[1]
         if self.solution.view.basis == "superposition":
             return positive.voltages(positive.before)
         c = voltage_factor(self.bus.volts, self.solution.view.case, self.bus.tolerance)
-        return np.where(positive.nodes >= 0, c, 0j)
+        return c * self.solution.profile(self.name)
 
     @property
     def voltage(self) -> complex:
@@ -129,11 +133,6 @@ class Faulted:
         """The phase currents into the fault (A)."""
         return Phases(*(x * self.at.amperes for x in phase_currents(self.fault.type, self.current)))
 
-    @property
-    def loop(self) -> complex | None:
-        """The impedance of the whole fault loop (per unit), E over I1; None without a current."""
-        return 1 / self.per_volt.positive if self.per_volt.positive else None
-
     @cached_property
     def voltages(self) -> dict[int, Numbers]:
         """The sequence voltages of every bus, per unit, from its own no-load angle.
@@ -153,8 +152,11 @@ class Faulted:
 
     def delivered(self, item: str, sequence: int) -> complex:
         """The sequence current that an item delivers into its bus during the fault, per unit."""
+        return self.through(self.solution.of[sequence].names.element(item), sequence)
+
+    def through(self, name: str, sequence: int) -> complex:
+        """The current of an element of a sequence network during the fault, per unit."""
         solution = self.solution.of[sequence]
-        name = solution.names.element(item)
         state, _ = self.at.units[sequence]
         found = -self.by_number[sequence] * solution.current(state, name)  # type: ignore[arg-type]
         if sequence == 1 and self.solution.view.basis == "superposition":
@@ -217,6 +219,5 @@ def across(fault: Fault, currents: Phases, found: Phases) -> Phases:
 
 def scaled_fault(fault: Fault, solution: SystemSolution) -> Fault:
     """A fault at the frequency of a view."""
-    return Fault(
-        fault.type, scaled(fault.impedance, solution.view), scaled(fault.ground, solution.view)
-    )
+    factor = solution.view.reactances
+    return Fault(fault.type, scaled(fault.impedance, factor), scaled(fault.ground, factor))

@@ -13,6 +13,10 @@ from equiv.threephase.model import Item, Link, OneLine, Shunt, Transformer, View
 from equiv.threephase.ratios import doubtful_ratio
 from equiv.threephase.words import level_words
 
+BY_DATA = (
+    "; capacitance to earth of cables and machines is not entered (b0), so the current to earth "
+    "is zero there only by the data"
+)
 _MANY = 20
 _MANY_REASONS = 4
 _SUPERPOSITION = View()
@@ -43,8 +47,8 @@ def no_earth_path(system: OneLine, view: View = _SUPERPOSITION) -> Mapping[str, 
     reasons = _reasons(items)
     for part in _parts(system.buses, joined):
         if not earthed.intersection(part):
-            why = _in_words([word for bus in part for word in reasons.get(bus, ())])
-            found.update((bus, _no_path_at(bus) + why) for bus in part)
+            why = _in_words([word for bus in part for word in reasons.get(bus, ())]) + BY_DATA
+            found.update((bus, no_path_at(bus) + why) for bus in part)
     return {bus: found[bus] for bus in system.buses if bus in found}
 
 
@@ -215,10 +219,11 @@ def _paths(system: OneLine) -> Iterator[Caution]:
     where: dict[str, list[str]] = {}
     for bus, words in no_earth_path(system).items():
         if bus in named:
-            where.setdefault(words.removeprefix(_no_path_at(bus)), []).append(bus)
+            where.setdefault(words.removeprefix(no_path_at(bus)), []).append(bus)
     for why, buses in islice(where.items(), _MANY):
-        yield Caution("no-earth-path", f"{_no_path_at(listed(buses))}{why}")
+        yield Caution("no-earth-path", f"{no_path_at(listed(buses))}{why}")
 
 
-def _no_path_at(place: str) -> str:
+def no_path_at(place: str) -> str:
+    """What stands before the reason that some buses have no path."""
     return f"no path for earth-fault current at {place}: "

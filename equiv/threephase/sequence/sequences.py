@@ -12,6 +12,7 @@ import math
 from collections.abc import Iterator
 from typing import NamedTuple
 
+from equiv.threephase.entered import scaled
 from equiv.threephase.model import Bus, Item, Link, OneLine, Shunt, Transformer, View
 
 SAME_RATIO = 1e-12
@@ -96,14 +97,9 @@ def _of_shunt(item: Shunt, system: OneLine, view: View, sequence: int) -> Iterat
             return
         if own is None or neutral is None:
             return
-        own += 3 * scaled(neutral, view)
+        own += 3 * scaled(neutral, view.reactances)
     if own is not None:
         yield ToEarth(item, item.bus.name, own / base, emf(item, system, view, sequence))
-
-
-def scaled(impedance: complex, view: View) -> complex:
-    """An impedance at the frequency of a view: its reactance is multiplied."""
-    return complex(impedance.real, impedance.imag * view.reactances)
 
 
 def emf(item: Shunt, system: OneLine, view: View, sequence: int = 1) -> complex | None:
@@ -147,7 +143,7 @@ def _zero_of_transformer(item: Transformer, system: OneLine, view: View) -> Iter
     connections = (group.first.connection, group.second.connection)
     neutrals = (item.neutral(1), item.neutral(2))
     own, ratio = item.series(0, view), item.rated[1] / item.rated[0]
-    first, second = (None if n is None else 3 * scaled(n, view) for n in neutrals)
+    first, second = (None if n is None else 3 * scaled(n, view.reactances) for n in neutrals)
     if connections == ("Y", "Y"):
         if first is not None and second is not None:
             yield _through(item, system, own + first + second / ratio**2)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence as Many
+from dataclasses import replace
 from functools import cached_property
 
 import numpy as np
@@ -11,10 +12,16 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.equations.solution import Solver, State
 from equiv.network import Branch
-from equiv.threephase.model import OneLine, View
+from equiv.threephase.model import OneLine, Shunt, View
 from equiv.threephase.sequence.connection import Impedances
 from equiv.threephase.sequence.displacement import no_load_angles
-from equiv.threephase.sequence.networks import REFERENCE, SequenceNetwork, injection, three_networks
+from equiv.threephase.sequence.networks import (
+    REFERENCE,
+    SequenceNetwork,
+    injection,
+    sequence_network,
+    three_networks,
+)
 
 KEEPS_DIGITS_UP_TO = 100
 """Buses up to which the branch-current form is solved: it keeps the digits of weak ties, such as
@@ -91,7 +98,7 @@ class SystemSolution:
     """A system in one view, its three sequence networks factorised once each."""
 
     def __init__(self, system: OneLine, view: View, faults: Many[str]) -> None:
-        self.system, self.view = system, view
+        self.system, self.view, self.faults = system, view, tuple(faults)
         self.buses = tuple(system.buses)
         self.angles = no_load_angles(system)
         self.form = "branch-current" if len(self.buses) <= KEEPS_DIGITS_UP_TO else "nodal"
@@ -111,6 +118,27 @@ class SystemSolution:
         """The items with an EMF, in the order of the file."""
         sources = self.networks[1].network.sources
         return tuple(s.name for s in sources if s.output == "V")
+
+    @cached_property
+    def idle(self) -> SequenceSolution:
+        """The positive sequence without machines: tied only where ratios around a loop disagree."""
+        items = {n: i for n, i in self.system.items.items() if not isinstance(i, Shunt)}
+        system = replace(self.system, items=items)
+        network = sequence_network(system, self.view, 1, self.faults)
+        return SequenceSolution(network, self.buses, self.form)
+
+    def profile(self, bus: str) -> Numbers:
+        """The voltage of every bus per volt at one, where that drives and no machine takes current.
+
+        It is what the ratios on the way make of it; 0 where no machine is.
+        """
+        if not self.of[1].ties.is_tied(bus):
+            return np.zeros(len(self.buses))
+        ties = self.idle.ties
+        if not ties.is_tied(bus):
+            return np.array([ties.rise(other, bus) for other in self.buses])
+        found = self.idle.voltages(self.idle.unit(bus))
+        return np.asarray(found / found[self.numbers[bus]])
 
     def steps(self, bus: str, fault: str) -> int:
         """How far a bus leads the faulted one at no load, in steps of 30 degrees."""

@@ -7,6 +7,7 @@ from collections.abc import Iterable, Iterator, Sequence
 from equiv.analyses.result import Caution, Check
 from equiv.analyses.tables import Cell, Column, Table
 from equiv.threephase.cases import FaultCase, FaultTerm
+from equiv.threephase.showing.study import Study
 from equiv.threephase.showing.sums import sums_of
 
 _KEYS = (Column("bus"), Column("type"))
@@ -15,6 +16,7 @@ _TERM = (
     Column("phase"),
     Column("source"),
     Column("kind"),
+    Column("parallel"),
     Column("contribution", "A", family="complex"),
     Column("share", "%"),
     Column("gross_share", "%"),
@@ -24,6 +26,7 @@ _TERM = (
 )
 _FAULT = (
     Column("level", "V"),
+    Column("c"),
     *(Column(f"current_{phase}", "A", family="complex") for phase in "abc"),
     Column("earth", "A", family="complex"),
     *(Column(f"sequence_{n}", "A", family="complex") for n in "012"),
@@ -32,6 +35,7 @@ _FAULT = (
     Column("peak_factor"),
     Column("peak", "A"),
     Column("asymmetrical_rms", "A"),
+    Column("peak_reason"),
     Column("reason"),
 )
 _VOLTAGE = (
@@ -41,9 +45,9 @@ _VOLTAGE = (
 
 
 def record_tables(
-    cases: Iterable[FaultCase], checks: Sequence[Check], cautions: Sequence[Caution]
+    cases: Iterable[FaultCase], study: Study, checks: Sequence[Check], cautions: Sequence[Caution]
 ) -> tuple[Table, ...]:
-    """Terms, faults, relays and voltages where there are, checks and cautions."""
+    """Terms, faults, relays and voltages where there are, the study, checks and cautions."""
     cases = list(cases)
     terms = [row for case in cases for row in _terms((case.bus, case.type), case, case.terms)]
     relays = [
@@ -61,7 +65,7 @@ def record_tables(
     ]
     tables = [
         _table("terms", (*_KEYS, *_TERM), terms),
-        _table("faults", (*_KEYS, *_FAULT), [_fault(case) for case in cases]),
+        _table("faults", (*_KEYS, *_FAULT), [_fault(case, study) for case in cases]),
     ]
     if relays:
         place = (Column("branch"), Column("relay_bus"))
@@ -69,7 +73,7 @@ def record_tables(
         tables.append(_relays(cases))
     if voltages:
         tables.append(_table("voltages", (*_KEYS, *_VOLTAGE), voltages))
-    return (*tables, *proof_tables(checks, cautions))
+    return (*tables, study.table(), *proof_tables(checks, cautions))
 
 
 def proof_tables(checks: Sequence[Check], cautions: Sequence[Caution]) -> Iterator[Table]:
@@ -99,16 +103,17 @@ def _terms(
     for term, plain, running in zip(terms, sums.terms, sums.running_sums, strict=True):
         partial: tuple[Cell, ...] = term.partial or ("", "", "")
         yield (
-            *keys, case.phase, term.source, term.kind, term.contribution, sums.share(plain),
+            *keys, case.phase, term.source, term.kind, term.parallel, term.contribution, sums.share(plain),
             sums.gross_share(plain), running, term.partial_bus or "", *partial,
         )  # fmt: skip
 
 
-def _fault(case: FaultCase) -> tuple[Cell, ...]:
+def _fault(case: FaultCase, study: Study) -> tuple[Cell, ...]:
     check: tuple[Cell, ...] = case.check or ("", "", "")
     return (
-        case.bus, case.type, case.volts, *case.phases, case.earth, *case.sequence, *check,
-        case.x_over_r, case.peak_factor, case.peak, case.asymmetrical_rms, "; ".join(case.reasons),
+        case.bus, case.type, case.volts, study.factors.get(case.bus, ""), *case.phases, case.earth, *case.sequence, *check,
+        case.x_over_r, case.peak_factor, case.peak, case.asymmetrical_rms, case.no_peak,
+        "; ".join(case.reasons),
     )  # fmt: skip
 
 
@@ -117,13 +122,15 @@ def _relays(cases: Iterable[FaultCase]) -> Table:
         *_KEYS,
         Column("branch"),
         Column("relay_bus"),
+        Column("parallel"),
         *(Column(f"current_{phase}", "A", family="complex") for phase in "abc"),
         Column("infeed_factor", family="ratio"),
         Column("impedance", "ohm", family="complex"),
+        Column("reason"),
     )
     rows = [
-        (case.bus, case.type, relay.branch, relay.bus, *relay.phases,
-         relay.infeed_factor, relay.impedance)
+        (case.bus, case.type, relay.branch, relay.bus, relay.parallel, *relay.phases,
+         relay.infeed_factor, relay.impedance, relay.blind)
         for case in cases
         for relay in case.relays
     ]  # fmt: skip

@@ -7,11 +7,13 @@ from collections.abc import Iterator, Sequence
 from equiv.analyses.result import Check
 from equiv.analyses.superposition.terms import NOTABLE_CANCELLATION
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
-from equiv.threephase.cases import FaultCase, FaultTerm, Phases
+from equiv.threephase.cases import STAR_POINT, FaultCase, FaultTerm, Phases
 from equiv.threephase.showing.setting import Setting, name_of, place_words, source_words
 from equiv.threephase.showing.state_tables import partials_table, voltages_table
 from equiv.threephase.showing.sums import sums_of
 from equiv.threephase.words import (
+    NETWORK_WORDS,
+    STAR_POINT_WORDS,
     basis_words,
     fault_words,
     impedance_words,
@@ -52,7 +54,7 @@ def _currents(setting: Setting, case: FaultCase, digits: int) -> Table:
     columns = (
         Column("current into the fault", key=True),
         Column("value", "A", family="i"),
-        Column("found again in phase coordinates", "A", family="i"),
+        Column("check in phase coordinates", "A", family="i"),
     )
     shown = 2 if check is None else 3
     notes = [f"{reason[0].upper()}{reason[1:]}." for reason in case.reasons]
@@ -67,6 +69,7 @@ def _currents(setting: Setting, case: FaultCase, digits: int) -> Table:
             impedance_words(
                 case.type, setting.fault_impedance, setting.ground_impedance, digits),
             basis_words(setting.basis, setting.case) + setting.source_words(case),
+            *setting.before,
             f"{setting.hertz}, phasors are rms; currents at {level_words(case.volts)}; angles "
             f"count from the no-load voltage of phase a at {case.bus}",
         ),
@@ -84,19 +87,26 @@ def disagreement(found: Phases, again: Phases) -> float:
 
 
 def _peak(setting: Setting, case: FaultCase) -> Table:
-    ratio: Cell = None if case.x_over_r is None else Measure(case.x_over_r, "")
-    sort = ", capacitive" if (case.x_over_r or 0) < 0 else ""
     rows: list[list[Cell]] = [
-        ["X/R of the fault loop", ratio, f"with the fault's impedance, {setting.hertz}{sort}"],
-        ["peak factor", Measure(case.peak_factor, ""),
+        ["X/R of the fault loop", _measure(case.x_over_r, ""),
+         f"with the fault's impedance, {setting.hertz}"],
+        ["peak factor", _measure(case.peak_factor, ""),
          f"1.02 + 0.98 exp(-3 R/X), R/X by the {setting.slow} method (IEC 60909-0)"],
-        ["peak current", Measure(case.peak, "A"), "peak factor · √2 · largest phase current"],
-        ["first-cycle rms", Measure(case.asymmetrical_rms, "A"),
-         "√(1 + 2 exp(-2·pi R/X)) · largest phase current: half a cycle, with its direct part"],
+        ["peak current", _measure(case.peak, "A"), "peak factor · √2 · largest phase current"],
+        ["first-cycle rms", _measure(case.asymmetrical_rms, "A"),
+         "√(1 + 2 exp(-2π R/X)) · largest phase current: half a cycle, with its d.c. component"],
     ]  # fmt: skip
     columns = (Column("peak and first cycle", key=True), Column("value"), Column("how"))
-    return Table("Peak and first cycle", (), columns, Table.rows_of(rows),
+    return Table("Peak and first cycle", (), columns, Table.rows_of(rows), _no_peak(case),
                  name=name_of(case, "peak"))  # fmt: skip
+
+
+def _measure(value: float | None, unit: str) -> Cell:
+    return None if value is None else Measure(value, unit)
+
+
+def _no_peak(case: FaultCase) -> tuple[str, ...]:
+    return (f"{case.no_peak[0].upper()}{case.no_peak[1:]}.",) if case.no_peak else ()
 
 
 def term_table(setting: Setting, case: FaultCase) -> Table:
@@ -150,16 +160,17 @@ def _partial_cells(term: FaultTerm, phase: str, levels: dict[str, float]) -> lis
 
 def _term_notes(setting: Setting, case: FaultCase) -> Iterator[str]:
     yield sum_note(case.terms, case.total)
+    yield from setting.together(member for term in case.terms for member in term.members)
     if setting.basis == "equivalent-source":
         yield (
             "Contribution: what of the source's partial current goes into the fault, at "
             f"{level_words(case.volts)}. Partial current: what it delivers from its own terminals "
             "during the fault, at its own level."
         )
-        if any(term.kind == "earthing" for term in case.terms):
-            yield "Star point: the zero-sequence current that a transformer's earthing lets flow."
+        if any(term.kind == STAR_POINT for term in case.terms):
+            yield STAR_POINT_WORDS
         if any(term.kind == "network" for term in case.terms):
-            yield "Network: what line charging and unequal ratios leave of the sum."
+            yield NETWORK_WORDS
         return
     yield (
         f"Term: what the source's EMF drives through the fault in phase {case.phase}, every other "

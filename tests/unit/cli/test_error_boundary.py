@@ -74,6 +74,13 @@ def test_wrong_usage_is_status_2_in_words_and_in_json(library: Library, words: l
     assert error["message"] and error["hint"]
 
 
+@pytest.mark.parametrize("command", [["fault", "f"], ["isolate", "f"]])
+def test_another_word_for_a_type_of_fault(library: Library, command: list[str]):
+    process = Process()
+    assert run([*command, "--type", "SLG"], process.environment) == 2
+    assert process.told.endswith("hint: did you mean line-ground?\n")
+
+
 def test_two_forms_are_one_too_many(library: Library):
     assert run(["solve", "f", "--json", "--as", "csv"], Process().environment) == 2
     assert run(["solve", "f", "--json", "--as", "json"], Process().environment) == 0

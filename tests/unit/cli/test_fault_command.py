@@ -143,3 +143,16 @@ def test_nothing_is_completed_for_a_network(tmp_path: Path) -> None:
     path = tmp_path / "plain.equiv"
     path.write_text("voltage E +a -gnd 1 V\nresistor R a gnd 1 ohm\n", encoding="utf-8")
     assert completion.buses(context(path), "") == completion.branches(context(path), "") == []
+
+
+def test_what_is_always_refused_is_not_offered(
+    system: str, capsys: pytest.CaptureFixture[str]
+) -> None:
+    assert run(["fault", "--help"], Process().environment) == 0
+    offered = capsys.readouterr().out
+    assert "--given" in offered and "--frequency" not in offered
+    assert run(["solve", "--help"], Process().environment) == 0
+    assert "--frequency" in capsys.readouterr().out
+    refused = Process()
+    assert run(["fault", system, "--frequency", "60Hz"], refused.environment) == 2
+    assert "is known at its own frequency only" in refused.err.getvalue()

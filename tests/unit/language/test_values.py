@@ -10,7 +10,7 @@ from unit.language.generated import seeded
 
 from equiv.errors import NetworkFileError
 from equiv.language import parse
-from equiv.units import SYMBOL, Formula, Phasor, Rectangular
+from equiv.units import SYMBOL, Formula, Phasor, Rectangular, write_number, write_value
 
 AC = "frequency 50 Hz\n"
 
@@ -197,7 +197,7 @@ def test_values_of_kinds_with_several() -> None:
         ("1e", "unknown-unit"),
         ("inf", "unknown-parameter"),
         ("nan", "unknown-parameter"),
-        ("1,5", "unknown-unit"),
+        ("1,5", "not-a-value"),
         ("3-4j", "needs-real"),
         ("5 @ 30 deg", "needs-real"),
         ("3-4 j", "unknown-unit"),
@@ -216,3 +216,18 @@ def test_what_is_no_resistance(text: str, expected: str) -> None:
 @seeded
 def test_decimal_numbers_are_exact(number: Decimal) -> None:
     assert value(f"{number} mohm") == Fraction(number) / 1000
+
+
+@pytest.mark.parametrize(
+    ("number", "text"),
+    [
+        ("0.0000080712", "8.0712e-6"), ("-1.5E-20", "-1.5e-20"), ("1E-12", "1e-12"),
+        ("80712", "80712"), ("0.00123", "0.00123"), ("1.25E+9", "1.25e9"), ("2E+6", "2000000"),
+    ],
+)  # fmt: skip
+def test_numbers_are_written_with_one_digit_before_the_point(number: str, text: str) -> None:
+    exact = Decimal(number)
+    assert write_number(exact) == text
+    assert Decimal(text) == exact
+    part = Rectangular(Decimal(0), exact)
+    assert value(write_value(part, "S"), "admittance", before=AC) == part

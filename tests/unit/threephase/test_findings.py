@@ -7,10 +7,11 @@ import pytest
 import equiv
 from equiv.threephase.loading import parse, require_system
 from equiv.threephase.model import OneLine, View
-from equiv.threephase.sequence.findings import doubts, no_earth_path
+from equiv.threephase.sequence.findings import BY_DATA, doubts, no_earth_path
 from equiv.threephase.vector_groups import read_group
 
 HEAD = "three-phase 50 Hz\nbus A 33 kV\nbus B 11 kV\nbus C 11 kV\n"
+NO_PATH = "no path for earth-fault current at B: "
 GRID = "infeed U A level 1 GVA x/r 9 z0/z1 1.3"
 
 
@@ -49,8 +50,8 @@ def test_an_infeed_that_passes_no_earth_current_through_a_delta() -> None:
     """The infeed is earthed; behind the transformer of star and star without earth nothing is."""
     system = read(GRID, transformer("YNyn0", "neutral1 solid neutral2 open"))
     paths = no_earth_path(system)
-    assert paths["B"] == "no path for earth-fault current at B: the 11 kV side of T is not earthed"
-    assert paths["C"] == "no path for earth-fault current at C: nothing there is earthed"
+    assert paths["B"] == f"{NO_PATH}the 11 kV side of T is not earthed{BY_DATA}"
+    assert paths["C"] == f"{NO_PATH.replace('B', 'C')}nothing there is earthed{BY_DATA}"
     assert "A" not in paths
 
 
@@ -58,7 +59,7 @@ def test_the_reasons_name_everything_that_might_be_earthed() -> None:
     system = read(GRID, transformer("YNd1", "neutral1 solid"), "generator G B 3 MVA 11 kV x1 15%",
                   "motor M B 1 MVA 11 kV start 5")  # fmt: skip
     assert no_earth_path(system)["B"] == (
-        "no path for earth-fault current at B: the 11 kV side of T is a delta and G is not earthed"
+        f"{NO_PATH}the 11 kV side of T is a delta and G is not earthed{BY_DATA}"
     )
     system = read(GRID, transformer("YNyn0", "neutral2 solid"))
     assert "is earthed, but the other is a star that is not earthed" in no_earth_path(system)["B"]

@@ -8,6 +8,7 @@ import equiv
 from equiv.errors import DoesNotExistError, UsageError
 from equiv.threephase.cases import TYPES
 from equiv.threephase.loading import require_system
+from equiv.threephase.sequence.connection import EARTH_FAULTS
 
 TEXT = """
 title Two sources
@@ -42,7 +43,9 @@ def sequence_currents(text: str) -> dict[str, complex]:
 @pytest.mark.parametrize("source", ["U", "G1", "wet"])
 def test_its_text_run_again_gives_the_term(kind: str, source: str) -> None:
     by = "group" if source == "wet" else "source"
-    words = {"type": kind, "fault_impedance": "0.1+0.05j ohm", "ground_impedance": "0.4 ohm"}
+    words = {"type": kind, "fault_impedance": "0.1+0.05j ohm"}
+    if kind in EARTH_FAULTS:
+        words["ground_impedance"] = "0.4 ohm"
     (case,) = equiv.fault(SYSTEM, "MAIN", by=by, **words).cases
     (term,) = [t.contribution for t in case.terms if t.source == source]
     text = equiv.isolate(SYSTEM, source, bus="MAIN", **words).plain_text()
@@ -67,6 +70,7 @@ def test_a_network_is_isolated_as_before() -> None:
         ({"bus": "MAIN", "type": "line-grond"}, "did you mean line-ground"),
         ({"bus": "MAIN", "fault_impedance": "-1 ohm"}, "resistance of zero or more"),
         ({"bus": "MAIN", "fault_impedance": "3 V"}, "expected ohms"),
+        ({"bus": "MAIN", "ground_impedance": "3 ohm"}, "no place in a three-phase fault"),
     ],
 )
 def test_what_cannot_be_isolated(words: dict[str, str], message: str) -> None:

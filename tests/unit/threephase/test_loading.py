@@ -12,7 +12,7 @@ import equiv
 from equiv.threephase.loading import require_network, require_system, says_three_phase
 from equiv.threephase.model import OneLine
 
-SYSTEM = "title A mill\nthree-phase 50 Hz\nbus A 11 kV\ninfeed U A level 100 MVA z0/z1 1\n"
+SYSTEM = "title A mill\nthree-phase 50 Hz\nbus A 11 kV\ninfeed U A level 100 MVA x/r 9 z0/z1 1\n"
 NETWORK = "note three-phase 50 Hz\nvoltage V +a -gnd 1 V\nresistor R a gnd 1 ohm\n"
 
 
@@ -70,6 +70,7 @@ def test_check_counts_what_is_there() -> None:
         "counts": {"buses": 1, "items": 1, "infeed": 1, "sources": 1, "groups of sources": 0},
         "hertz": [50.0],
         "kilovolts": [11.0],
+        "prefault": 1.0,
     }
     assert "Nothing is wrong or doubtful." in str(result)
     assert result.to_dict()["title"] == "A mill"
