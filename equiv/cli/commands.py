@@ -201,6 +201,7 @@ def port(
     symbolic: formulas.Symbolic = None,
     expand: formulas.Expand = False,
     fails_for: formulas.FailsFor = None,
+    derivative: formulas.Derivative = None,
 ) -> Result:
     """Equivalents or parameters of one port or several.
 
@@ -226,6 +227,7 @@ def port(
         return equiv.port(
             network, *named, form=form, at=frequencies, exact=exact,
             symbolic=symbolic, expand=expand, fails_for=fails_for,
+            derivative=derivative,
         )  # fmt: skip
     result = equiv.port(
         network,
@@ -234,6 +236,9 @@ def port(
         reference=reference or 50,
         at=frequencies,
         exact=exact,
+        expand=expand,
+        fails_for=fails_for,
+        derivative=derivative,
         progress=run.progress,
     )
     files.write(result)
