@@ -12,8 +12,9 @@ from typing import NamedTuple
 from equiv.elements import Element
 from equiv.elements.element import Frequency, Parameters
 from equiv.elements.quantity import Quantity
+from equiv.elements.words import no_such_pair, what_it_was, which_pair
 from equiv.errors import Diagnostic, UsageError, nearest
-from equiv.units import Value, write_value
+from equiv.units import Value
 
 DC = Frequency(Decimal(0))
 
@@ -197,7 +198,7 @@ class Network:
         """
         kept = set(self.members(name))
         off = [s for s in self.sources if s.name not in kept]
-        remarks = {s.name: f"switched off: {_what_it_was(s)}" for s in off}
+        remarks = {s.name: f"switched off: {what_it_was(s)}" for s in off}
         quiet = self.replacing({s.name: s.switched_off() for s in off})
         title = f"{self.title} ({name} alone)" if self.title else f"{name} alone"
         return replace(quiet, title=title, comments={**self.comments, **remarks})
@@ -231,7 +232,7 @@ class Network:
             self._require(names, pool, wanted)
             raise AssertionError  # _require has raised
         if quantity.pair >= len(element.pairs):
-            raise UsageError(_no_such_pair(element, quantity))
+            raise UsageError(no_such_pair(element, quantity))
         return Branch(name, quantity.pair)
 
     @staticmethod
@@ -249,7 +250,7 @@ class Network:
                 return f"voltage of {place.first} over {place.second}"
             return f"voltage of {place.first} over {place.second}, positive where {place.first} is higher"
         first, second = self.pair_nodes(place)
-        which = "" if len(self.elements[place.element].pairs) < 2 else _which_pair(place.pair)
+        which = "" if len(self.elements[place.element].pairs) < 2 else which_pair(place.pair)
         if quantity.what == "V":
             return (
                 f"voltage of {place.element}{which}, positive where {first} is higher than {second}"
@@ -274,33 +275,11 @@ def _changed(
     return change(again(given))
 
 
-def _what_it_was(source: Element) -> str:
-    value = write_value(source.value, source.fields[0].units[0])  # type: ignore[arg-type]
-    at = source.options.at
-    when = f" at {write_value(at.value, at.unit)}" if at else ""
-    return f"was {source.kind} {value}{when}"
-
-
-def _which_pair(pair: int) -> str:
-    names = ("first terminal pair", "second terminal pair")
-    return f" ({names[pair] if pair < len(names) else f'terminal pair {pair + 1}'})"
-
-
 def _two_meanings(name: str) -> Diagnostic:
     return Diagnostic(
         "two-meanings",
         f"{name} is both a node and an element",
         hint=f"write V:{name},NODE for the node's voltage over another node",
-    )
-
-
-def _no_such_pair(element: Element, quantity: Quantity) -> Diagnostic:
-    count = len(element.pairs)
-    return Diagnostic(
-        "no-such-pair",
-        f"{element.name} is a {element.kind} and has "
-        + ("no terminal pair of its own" if count == 0 else f"{count} terminal pair(s)"),
-        hint=f"{quantity} asks for pair {quantity.pair + 1}",
     )
 
 

@@ -9,8 +9,9 @@ from typing import TYPE_CHECKING, Any, ClassVar, NamedTuple, overload
 from equiv.analyses.cautions import about_network, interpolated
 from equiv.analyses.closing import closing_table
 from equiv.analyses.exactness import exactly
-from equiv.analyses.formulas.kinds import require_plain
+from equiv.analyses.formulas.kinds import require_plain, require_symbolic
 from equiv.analyses.headings import at_words
+from equiv.analyses.ports.cautions import resistance_cautions
 from equiv.analyses.ports.choice import chosen_ports
 from equiv.analyses.ports.choice import find_port as find_port
 from equiv.analyses.ports.equivalent import equivalent as equivalent
@@ -100,6 +101,9 @@ def port(
     at: Sequence[Given] = (),
     exact: bool = False,
     symbolic: None = None,
+    expand: bool = False,
+    fails_for: str | None = None,
+    derivative: str | None = None,
     progress: Progress = no_progress,
 ) -> PortEquivalent: ...
 
@@ -115,6 +119,7 @@ def port(
     symbolic: bool | str | Sequence[str] | None = None,
     expand: bool = False,
     fails_for: str | None = None,
+    derivative: str | None = None,
     progress: Progress = no_progress,
 ) -> PortEquivalent | FormulaPort: ...
 
@@ -129,6 +134,7 @@ def port(
     symbolic: bool | str | Sequence[str] | None = None,
     expand: bool = False,
     fails_for: str | None = None,
+    derivative: str | None = None,
     progress: Progress = no_progress,
 ) -> PortEquivalent | FormulaPort:
     """The Thevenin and Norton equivalents of one port, or the coupled ones of several.
@@ -142,7 +148,8 @@ def port(
     `reference` (ohm) of s, one or one a port; `at` frequencies (hertz, or text such as `1 MHz`)
     in place of those of the sources; `exact` for rational arithmetic; `symbolic` for formulas in
     the elements' names (True: all; else the named ones) and in s, `expand` written out whatever
-    their length, with the value of `fails_for` at which there is no Thevenin equivalent.
+    their length, with the value of `fails_for` at which there is no Thevenin equivalent, and
+    the derivatives of one port's equivalents with respect to `derivative`.
     Errors: UsageError for an unknown port or form; NoUniqueSolutionError; DoesNotExistError where
     the form does not exist; UsageError where an exact result would need an irrational value.
     Sign convention: v is `plus` over `minus`, i flows out of `plus` into the load; the currents
@@ -151,28 +158,24 @@ def port(
     """
     if symbolic is not None and symbolic is not False:
         require_plain(form=bool(form), at=bool(at), exact=exact)
-        wanted = (symbolic, expand, fails_for)
+        wanted = (symbolic, expand, fails_for, derivative)
         return _in_symbols(network, chosen_ports(network, ports), wanted)
+    require_symbolic(expand=expand, fails_for=bool(fails_for), derivative=bool(derivative))
     network = exactly(network, exact)
     chosen = chosen_ports(network, ports)
     checked_form(form, len(chosen))
     references = references_of(reference, len(chosen), exact=form == "s" and network.exact)
-    frequencies = frequencies_of(at) or _own_frequencies(network)
-    points: list[_Point] = []
-    for number, frequency in enumerate(frequencies):
-        progress("port equivalents", number, len(frequencies))
-        here = network_at(network, frequency) if at else network
-        points.append(_point(here, chosen, frequency, form, references))
     general = about_network(network)
     if at:  # nothing is taken at the file's own frequency
         general = [c for c in general if c not in interpolated(network)]
+    points = _points(network, chosen, frequencies_of(at), form, references, progress)
     return _put_together(network, points, general)
 
 
 def _in_symbols(
     network: Network,
     ports: tuple[Port, ...],
-    wanted: tuple[bool | str | Sequence[str], bool, str | None],
+    wanted: tuple[bool | str | Sequence[str], bool, str | None, str | None],
 ) -> FormulaPort:
     from equiv.analyses.formulas.ported import ported
     from equiv.analyses.formulas.wanted import Wanted
@@ -197,6 +200,24 @@ class _Point(NamedTuple):
     cautions: list[Caution]
 
 
+def _points(
+    network: Network,
+    ports: tuple[Port, ...],
+    wanted: tuple[Frequency, ...],
+    form: str | None,
+    references: tuple[float, ...],
+    progress: Progress,
+) -> list[_Point]:
+    """What is found at the wanted frequencies, or else at those of the network."""
+    frequencies = wanted or _own_frequencies(network)
+    points: list[_Point] = []
+    for number, frequency in enumerate(frequencies):
+        progress("port equivalents", number, len(frequencies))
+        here = network_at(network, frequency) if wanted else network
+        points.append(_point(here, ports, frequency, form, references))
+    return points
+
+
 def _point(
     network: Network,
     ports: tuple[Port, ...],
@@ -207,7 +228,7 @@ def _point(
     found = equivalent(network, ports, frequency)
     checks = _checks(network, found)
     near = interpolated(replace(network, frequency=frequency))
-    cautions = [*_cautions(found), *near]
+    cautions = [*resistance_cautions(found), *near]
     if form is None:
         return _Point(found, None, checks, cautions)
     parameters = _required(network, found, form, references)
@@ -273,27 +294,3 @@ def _checks(network: Network, e: Equivalent) -> list[Check]:
     if off is not None:
         checks.append(Check(f"Blackman's formula{where}", off, limit))
     return checks
-
-
-def _cautions(e: Equivalent) -> list[Caution]:
-    """Ports whose resistance is not positive, each by its own name."""
-    if not e.thevenin and not e.norton:
-        return []
-    what = "resistance" if e.thevenin else "conductance"
-    found = []
-    for port, value in zip(e.ports, e.own_resistances, strict=True):
-        # without a Thevenin form a conductance of zero is an ideal current source
-        if value > 0 or (value == 0 and not e.thevenin):
-            continue
-        sign = "zero" if value == 0 else "negative"
-        found.append(_not_positive(f"the {what} of {port.name} is {sign}"))
-    if not found and (e.least_resistance or 0) < 0:
-        found.append(_not_positive(f"together {e.named} can give more than they take"))
-    return found
-
-
-def _not_positive(words: str) -> Caution:
-    return Caution(
-        "resistance-not-positive",
-        f"{words}: this is legal, but the operating point with a load may not be stable",
-    )

@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar, Literal, overload
 
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
 from equiv.analyses.exactness import exactly
-from equiv.analyses.formulas.kinds import require_plain
+from equiv.analyses.formulas.kinds import require_plain, require_symbolic
 from equiv.analyses.headings import at_words, positive_words
 from equiv.analyses.result import Caution, Check, Result
 from equiv.analyses.superposition.data import quantity_data
@@ -133,6 +133,7 @@ def superpose(
         require_plain(detail=detail, paths=paths, exact=exact)
         wanted = (symbolic, expand, fails_for, derivative)
         return _in_symbols(network, quantities, wanted, by, check, progress)
+    require_symbolic(expand=expand, fails_for=bool(fails_for), derivative=bool(derivative))
     network = exactly(network, exact)
     finds = _finds(network, quantities)
     if not finds:
@@ -140,6 +141,19 @@ def superpose(
     work = TermFinder(network, by, paths, check, progress)
     columns = [work.at(frequency, finds) for frequency in network.frequencies]
     tables = dict(zip(finds, zip(*columns, strict=True), strict=True))
+    return _put_together(network, work, tables, detail)
+
+
+def _put_together(
+    network: Network,
+    work: TermFinder,
+    tables: Mapping[Find, Sequence[FrequencyTerms]],
+    detail: bool,
+) -> Superposition:
+    """The result of the terms of each quantity, with its checks and cautions.
+
+    Errors: NoUniqueSolutionError where no quantity has a value at any frequency.
+    """
     refusals = [f.refusal for terms in tables.values() for f in terms if f.refusal]
     found = tuple(
         _quantity(network, find, terms)
@@ -179,8 +193,11 @@ def _in_symbols(
     from equiv.analyses.formulas.wanted import Wanted
 
     finds = _finds(network, quantities)
+    without: tuple[str, ...] = ()
     if not quantities:
-        finds = tuple(find for find in finds if find.quantity.what != "P") or finds
+        kept = tuple(find for find in finds if find.quantity.what != "P") or finds
+        without = tuple(str(find.quantity) for find in finds if find not in kept)
+        finds = kept
     if not finds:
         return Superposition(network)
 
@@ -188,7 +205,7 @@ def _in_symbols(
         asked = [find.quantity for find in finds]
         return superpose(network, *asked, by=by, check=check, progress=progress).quantities
 
-    return superposed(network, finds, Wanted(*wanted), by, numeric)
+    return superposed(network, finds, Wanted(*wanted), by, numeric, without)
 
 
 def _finds(network: Network, quantities: Sequence[str | Quantity]) -> tuple[Find, ...]:

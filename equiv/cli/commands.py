@@ -212,6 +212,7 @@ def port(
     symbolic: formulas.Symbolic = None,
     expand: formulas.Expand = False,
     fails_for: formulas.FailsFor = None,
+    derivative: formulas.Derivative = None,
 ) -> Result:
     """Equivalents or parameters of one port or several.
 
@@ -237,6 +238,7 @@ def port(
         return equiv.port(
             network, *named, form=form, at=frequencies, exact=exact,
             symbolic=symbolic, expand=expand, fails_for=fails_for,
+            derivative=derivative,
         )  # fmt: skip
     result = equiv.port(
         network,
@@ -245,6 +247,9 @@ def port(
         reference=reference or 50,
         at=frequencies,
         exact=exact,
+        expand=expand,
+        fails_for=fails_for,
+        derivative=derivative,
         progress=run.progress,
     )
     files.write(result)

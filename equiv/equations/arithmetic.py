@@ -89,5 +89,6 @@ def _needs_value(element: Element) -> Diagnostic:
     return Diagnostic(
         "no-value",
         f"{element.name} is written with `?` and has no number",
-        hint=f"give {element.kind} {element.name} a value: this result is numeric",
+        hint=f"give {element.kind} {element.name} a value; superpose and port have results in "
+        "symbols too (--symbolic)",
     )

@@ -43,6 +43,8 @@ def unstable_frequencies(network: Network) -> list[complex]:
         return []
     if network.tabulated:
         return []  # what a file gives is known on the imaginary axis only
+    if any(map(_is_open, elements)):
+        return []
     layout = Layout(network, FLOATING)
     still = System(layout, "nodal", 0.0)
     if still.size > LARGEST or np.issubdtype(still.dtype, np.complexfloating):
@@ -61,6 +63,15 @@ def _is_active(element: Element) -> bool:
     if element.role != "passive" or value is None or isinstance(value, Parameters | Symbol):
         return False
     return complex(as_number(value)).real < 0
+
+
+def _is_open(element: Element) -> bool:
+    """Whether a value is written `?`."""
+    value = element.value
+    given = (
+        [v for _, some in value.items for v in some] if isinstance(value, Parameters) else [value]
+    )
+    return any(isinstance(v, Symbol) for v in given)
 
 
 def _margin(s: complex, found: list[complex]) -> float:

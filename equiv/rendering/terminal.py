@@ -115,7 +115,7 @@ def _parts(strips: list[_Strip], width: int | None) -> Iterator[list[_Strip]]:
 def _narrowed(strips: list[_Strip], keys: Sequence[int], width: int) -> list[_Strip]:
     """Columns of sentences wrapped: so that all columns fit, or else one fits beside the keys."""
     for i, strip in enumerate(strips):
-        if strip.right or not any(" " in text.strip() for text in strip.texts):
+        if strip.right or not any(set(text.strip()) & set(" *") for text in strip.texts):
             continue
         others = _total_width(strips) - strip.width
         beside = sum(strips[k].width + len(GAP) for k in keys if k != i)
@@ -132,7 +132,22 @@ def _narrowed(strips: list[_Strip], keys: Sequence[int], width: int) -> list[_St
 
 def _wrapped(text: str, width: int) -> list[str]:
     start = text[: len(text) - len(text.lstrip())]
-    return [start + line for line in wrap(text, width - len(start))]
+    room = width - len(start)
+    words = " ".join(_with_breaks(word, room) for word in text.split())
+    return [start + line for line in wrap(words, room)]
+
+
+def _with_breaks(word: str, width: int) -> str:
+    """A product that is longer than a line, with blanks where lines may end."""
+    lines, line = [], ""
+    for factor in word.split("*") if len(word) > width else [word]:
+        longer = f"{line}*{factor}" if line else factor
+        # a power's two stars stay together
+        if line and factor and line[-1] != "*" and len(longer) > width:
+            lines.append(line)
+            longer = f"*{factor}"
+        line = longer
+    return " ".join([*lines, line])
 
 
 def _part(strips: Sequence[_Strip], rows: Sequence[Row], marks: Marks) -> Iterator[str]:

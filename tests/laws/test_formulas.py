@@ -1,67 +1,16 @@
 """Formulas of random networks, as text, against the network's textbook equations in fractions."""
 
-import ast
 import random
 from fractions import Fraction
-from operator import add, mul, sub, truediv
 from typing import Any
 
 import pytest
 import sympy
+from laws.formula_text import Names, Values, in_sympy, number
 from laws.random_networks import Maker, quantities
 from laws.tableau import Tableau
 
 import equiv
-
-
-class Values:
-    """Random fractions for every value, by element and part and by name in formulas."""
-
-    def __init__(self, seed: int) -> None:
-        self.random, self.known = random.Random(seed), {}
-
-    def __call__(self, element: str, part: str = "") -> Fraction:
-        name = f"{element}_{part}" if part else element
-        if name not in self.known:
-            sign = self.random.choice((1, 1, -1))
-            self.known[name] = sign * Fraction(
-                self.random.randint(1, 99), self.random.randint(1, 9)
-            )
-        return self.known[name]
-
-
-class Names(dict[str, Any]):
-    """Names in a formula, with their values."""
-
-    def __init__(self, values: Values, s: Fraction) -> None:
-        super().__init__(s=s)
-        self.values_of = values
-
-    def __missing__(self, name: str) -> Fraction:
-        return self.values_of(name)
-
-
-OPERATORS = {ast.Add: add, ast.Sub: sub, ast.Mult: mul, ast.Div: truediv}
-
-
-def number(text: str, names: Names) -> Fraction:
-    """What a formula comes to, read as the ordinary infix expression that it is."""
-
-    def value(node: ast.expr) -> Fraction:
-        match node:
-            case ast.Constant(int(whole)):
-                return Fraction(whole)
-            case ast.Name(name):
-                return names[name]
-            case ast.UnaryOp(ast.USub(), operand):
-                return -value(operand)
-            case ast.BinOp(left, ast.Pow(), ast.Constant(int(exponent))):
-                return value(left) ** exponent
-            case ast.BinOp(left, operator, right):
-                return OPERATORS[type(operator)](value(left), value(right))
-        raise AssertionError(ast.dump(node))
-
-    return value(ast.parse(text, mode="eval").body)
 
 
 def devices(maker: Maker, draw: random.Random) -> str:
@@ -223,31 +172,10 @@ def test_nothing_is_common_to_all_polynomials(seed: int) -> None:
     formula = data["quantities"][0]["denominator"]["formula"]
     assert "X1" not in formula and "X2" not in formula
     if not names:
-        tops = [sympy.fraction(sympy.together(_in_sympy(t["coefficient"]["formula"])))[0]
+        tops = [sympy.fraction(sympy.together(in_sympy(t["coefficient"]["formula"])))[0]
                 for t in data["quantities"][0]["frequencies"][0]["terms"]]  # fmt: skip
-        bottom = sympy.expand(_in_sympy(formula))
+        bottom = sympy.expand(in_sympy(formula))
         assert sympy.gcd_list([bottom, *map(sympy.expand, tops)]).is_number
-
-
-def _in_sympy(text: str) -> Any:
-    """A formula built from Python's own reading of it."""
-    operators = {ast.Add: add, ast.Sub: sub, ast.Mult: mul, ast.Div: truediv}
-
-    def value(node: ast.expr) -> Any:
-        match node:
-            case ast.Constant(int(whole)):
-                return sympy.Integer(whole)
-            case ast.Name(name):
-                return sympy.Symbol(name)
-            case ast.UnaryOp(ast.USub(), operand):
-                return -value(operand)
-            case ast.BinOp(left, ast.Pow(), ast.Constant(int(exponent))):
-                return value(left) ** exponent
-            case ast.BinOp(left, operator, right):
-                return operators[type(operator)](value(left), value(right))
-        raise AssertionError(ast.dump(node))
-
-    return value(ast.parse(text, mode="eval").body)
 
 
 @pytest.mark.parametrize("style", [{}, {"expand": True}])
@@ -296,8 +224,8 @@ def test_the_derivative_is_that_of_the_formula() -> None:
     found = equiv.superpose(equiv.parse(text), "V:b", symbolic=True, derivative="R1")
     data = found.data()["quantities"][0]["derivatives"]
     r1, r2, vs = sympy.symbols("R1 R2 Vs")
-    assert sympy.cancel(_in_sympy(data[0]["formula"]) + vs * r2 / (r1 + r2) ** 2) == 0
+    assert sympy.cancel(in_sympy(data[0]["formula"]) + vs * r2 / (r1 + r2) ** 2) == 0
     assert data[0]["re"] == data[-1]["re"] == -10 * 3 / 16
     own = equiv.superpose(equiv.parse(text), "V:b", symbolic=True, derivative="Vs")
     formula = own.data()["quantities"][0]["derivatives"][0]["formula"]
-    assert sympy.cancel(_in_sympy(formula) - r2 / (r1 + r2)) == 0
+    assert sympy.cancel(in_sympy(formula) - r2 / (r1 + r2)) == 0

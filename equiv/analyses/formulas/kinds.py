@@ -16,3 +16,17 @@ def require_plain(**options: bool) -> None:
                     hint="give one of them",
                 )
             )
+
+
+def require_symbolic(**options: bool) -> None:
+    """Complain of options that only formulas have, where none are asked for."""
+    for name, given in options.items():
+        if given:
+            option = f"--{name.replace('_', '-')}"
+            raise UsageError(
+                Diagnostic(
+                    "only-with-formulas",
+                    f"{option} is about formulas, and none are asked for",
+                    hint=f"give --symbolic too, or leave {option} out",
+                )
+            )

@@ -8,7 +8,8 @@ from typing import Any, NamedTuple
 from equiv.analyses.formulas.port_numbers import PortNumbers, SideNumbers
 from equiv.analyses.formulas.ports import Entry, PortFormulas, Side
 from equiv.analyses.formulas.told import Failing, InS
-from equiv.analyses.formulas.values import Value
+from equiv.analyses.formulas.values import Value, Where
+from equiv.equations.symbolic.expression import names_in
 from equiv.equations.symbolic.infix import text_of
 
 
@@ -94,10 +95,22 @@ def shared_data(
                 "formula": text_of(a.denominator),
                 "style": a.style,
                 "terms": a.terms,
-                "degree": None if a.family is None else a.family.degree,
+                "degree": a.degree,
             }
             for a in formulas.answers
         ],
         "fails": [f.data() for f in failing],
         **({"response": response.data()} if response else {}),
     }
+
+
+def used_parts(formulas: PortFormulas) -> Where:
+    """The named parts that the formulas in the JSON use, in order."""
+    sides = [side for side in (formulas.thevenin, formulas.norton) if side is not None]
+    written = [e.whole for side in sides for row in (*side.terms, *side.matrix) for e in row]
+    used = {name for formula in written for name in names_in(formula)}
+    used.update(name for a in formulas.answers for name in names_in(a.denominator))
+    for name, part in reversed(formulas.where):
+        if name in used:
+            used.update(names_in(part))
+    return [(name, part) for name, part in formulas.where if name in used]

@@ -9,6 +9,7 @@ import numpy as np
 
 from equiv.analyses.formulas.numbers import has_numbers, values_at
 from equiv.analyses.formulas.ports import Matrix, PortFormulas, Side
+from equiv.analyses.formulas.proof import floating_numbers
 from equiv.analyses.headings import at_words
 from equiv.analyses.ports.equivalent import equivalent
 from equiv.analyses.ports.proof import Equivalent
@@ -27,6 +28,8 @@ class SideNumbers:
 
     terms: Grid
     matrix: Grid
+    floating: bool = False
+    """Whether the formulas have no number, though their symbols have: floating point's."""
 
     def total(self, port: int, chosen: Sequence[int]) -> complex | None:
         """The sum of a port's terms."""
@@ -59,22 +62,47 @@ def port_numbers(network: Network, formulas: PortFormulas, frequency: Frequency)
     def grid(matrix: Matrix) -> Grid:
         return tuple(tuple(numbers.of(entry.whole) for entry in row) for row in matrix)
 
-    def side(of: Side | None) -> SideNumbers | None:
-        return None if of is None else SideNumbers(grid(of.terms), grid(of.matrix))
+    def side(of: Side | None, which: str) -> SideNumbers | None:
+        if of is None:
+            return None
+        found = SideNumbers(grid(of.terms), grid(of.matrix))
+        return found if numeric is None else _complete(found, numeric, which, chosen)
 
-    numeric, cautions = None, ()
+    numeric: Equivalent | None = None
+    cautions: list[Caution] = []
     if has_numbers(solver):
         try:
             numeric = equivalent(network, formulas.ports, frequency)
         except NoUniqueSolutionError as error:
             words = "; ".join(d.message for d in error.diagnostics)
             caution = Caution("no-unique-solution", f"with the values of the file: {words}")
-            cautions = (caution,)  # type: ignore[assignment]
+            cautions = [caution]
     values = tuple(numbers.of(solver.value(k)) for k in range(len(sources)))
-    return PortNumbers(
-        frequency, tuple(chosen), values, side(formulas.thevenin), side(formulas.norton),
-        numeric, cautions,
-    )  # fmt: skip
+    thevenin, norton = side(formulas.thevenin, "Thevenin"), side(formulas.norton, "Norton")
+    for name, found in (("Thevenin", thevenin), ("Norton", norton)):
+        if found is not None and found.floating:
+            cautions.append(floating_numbers(f"{name} formulas"))
+    return PortNumbers(frequency, tuple(chosen), values, thevenin, norton, numeric, tuple(cautions))
+
+
+def _complete(
+    found: SideNumbers, numeric: Equivalent, which: str, chosen: Sequence[int]
+) -> SideNumbers:
+    """The numbers of floating point in place of those that the formulas do not have."""
+    asked = [x for row in found.matrix for x in row]
+    asked += [row[k] for row in found.terms for k in chosen]
+    thevenin = which == "Thevenin"
+    matrix = numeric.impedance if thevenin else numeric.admittance
+    columns = numeric.voltages if thevenin else numeric.currents
+    if matrix is None or columns is None or all(x is not None for x in asked):
+        return found
+    terms: list[list[complex | None]] = [[None] * len(row) for row in found.terms]
+    for column, members in enumerate(numeric.members):
+        if len(members) == 1:  # a group has no numbers of its members
+            for p, row in enumerate(terms):
+                row[members[0]] = complex(columns[p, column])
+    grid = tuple(tuple(map(complex, row)) for row in matrix)
+    return SideNumbers(tuple(map(tuple, terms)), grid, floating=True)
 
 
 def port_checks(formulas: PortFormulas, at: PortNumbers) -> list[Check]:
@@ -88,7 +116,7 @@ def port_checks(formulas: PortFormulas, at: PortNumbers) -> list[Check]:
     )
     checks = []
     for name, side, matrix, vector, terms in pairs:
-        if side is None or matrix is None or vector is None:
+        if side is None or side.floating or matrix is None or vector is None:
             continue
         found = [[_number(x) for x in row] for row in side.matrix]
         sums = [_number(side.total(p, at.chosen)) for p in range(len(formulas.ports))]

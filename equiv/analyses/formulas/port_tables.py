@@ -33,7 +33,7 @@ def port_tables(
     tables.append(_equivalents_table(network, formulas, numbers, failing, digits))
     if formulas.where:
         terms = [a.terms for a in formulas.answers if a.terms is not None]
-        degrees = [a.family.degree for a in formulas.answers if a.family is not None]
+        degrees = [a.degree for a in formulas.answers if a.degree is not None]
         length = length_words(max(terms, default=None), max(degrees, default=None))
         tables.append(where_table(formulas.where, _named(formulas), length))
     if response:
@@ -173,6 +173,7 @@ def _quantities(formulas: PortFormulas) -> list[tuple[str, str, Any, tuple[Entry
     """Every quantity of the equivalents: words, unit, its number's finder, its formula."""
     found: list[tuple[str, str, Any, tuple[Entry, Any]]] = []
     several = len(formulas.ports) > 1
+    shared = not several and len(formulas.answers) == 1
     pairs = (
         ("thevenin", formulas.thevenin, "open-circuit voltage", "V", "impedance", "ohm"),
         ("norton", formulas.norton, "short-circuit current", "A", "admittance", "S"),
@@ -184,7 +185,7 @@ def _quantities(formulas: PortFormulas) -> list[tuple[str, str, Any, tuple[Entry
             of = f" of {port.name}" if several else ""
             total = side.total(p)
             if formulas.solver.sources:
-                short = total.short if several else quotient(Name("Nv"), total.under)
+                short = quotient(Name("Nv"), total.under) if shared else total.short
                 found.append((first + of, unit, _total(which, p), (total, short)))
         for p, port in enumerate(formulas.ports):
             for q, other in enumerate(formulas.ports):
@@ -211,5 +212,7 @@ def _existence(formulas: PortFormulas) -> list[str]:
     if formulas.no_norton:
         notes.append(f"There is no Norton equivalent: {formulas.no_norton}.")
     if not notes:
-        notes.append("Both equivalents exist, but for values at which D or Nz is zero.")
+        shared = len(formulas.ports) == 1 and len(formulas.answers) == 1
+        which = "D or Nz" if shared else "one of the denominators"
+        notes.append(f"Both equivalents exist, but for values at which {which} is zero.")
     return notes

@@ -9,12 +9,14 @@ from typing import Any, ClassVar
 from equiv.analyses.cautions import about_network
 from equiv.analyses.closing import closing_table
 from equiv.analyses.formulas.legend import legend_of, symbols_data
-from equiv.analyses.formulas.port_data import at_data, shared_data
+from equiv.analyses.formulas.port_data import at_data, shared_data, used_parts
 from equiv.analyses.formulas.port_numbers import PortNumbers, port_checks, port_numbers
+from equiv.analyses.formulas.port_slopes import PortSlopes, port_slopes
 from equiv.analyses.formulas.port_tables import port_tables
 from equiv.analyses.formulas.ports import PortFormulas, port_formulas
+from equiv.analyses.formulas.proof import of_failing
 from equiv.analyses.formulas.told import Failing, InS, failing, in_s
-from equiv.analyses.formulas.wanted import Wanted
+from equiv.analyses.formulas.wanted import Wanted, symbol_of
 from equiv.analyses.result import Check, Result
 from equiv.analyses.tables import Table
 from equiv.elements.element import Frequency
@@ -22,6 +24,8 @@ from equiv.equations.symbolic.bordered import Place
 from equiv.equations.symbolic.infix import text_of
 from equiv.errors import ExitStatus
 from equiv.network import Network, Port
+
+_FORMULAS = ("voltage", "impedance", "current", "admittance")
 
 
 @dataclass(frozen=True)
@@ -38,6 +42,7 @@ class FormulaPort(Result):
     """At each frequency of the sources."""
     failing: tuple[Failing, ...] = ()
     response: InS | None = None
+    slopes: PortSlopes | None = None
     symbols: tuple[tuple[str, str], ...] = ()
     legend: tuple[str, ...] = ()
 
@@ -47,6 +52,8 @@ class FormulaPort(Result):
         tables = port_tables(
             self.network, self.formulas, self.numbers, self.failing, self.response, digits
         )
+        if self.slopes is not None:
+            tables.append(self.slopes.table())
         remark = (
             "An equivalent stands for the terminals alone: losses and efficiency inside it are "
             "not those of the network."
@@ -62,7 +69,9 @@ class FormulaPort(Result):
         found = [at_data(self.formulas, numbers) for numbers in self.numbers]
         data = {**found[0], "frequencies": found} if len(found) > 1 else found[0]
         data |= shared_data(self.formulas, self.failing, self.response)
-        data["where"] = [[name, text_of(part)] for name, part in self.formulas.where]
+        if self.slopes is not None:
+            data["derivatives"] = self.slopes.data()
+        data["where"] = [[name, text_of(part)] for name, part in used_parts(self.formulas)]
         data["symbols"] = dict(self.symbols)
         return data
 
@@ -70,11 +79,13 @@ class FormulaPort(Result):
         """A formula as a sympy expression, its named parts put in.
 
         `what` is voltage, impedance, current or admittance; ports by their numbers, from 0.
-        Errors: ValueError where that equivalent does not exist.
+        Errors: ValueError for another word, and where that equivalent does not exist.
         """
         from equiv.equations.symbolic.sympy_form import with_parts
 
         assert self.formulas is not None
+        if what not in _FORMULAS:
+            raise ValueError(f"{what!r} is none of {', '.join(_FORMULAS)}")
         thevenin = what in ("voltage", "impedance")
         side = self.formulas.thevenin if thevenin else self.formulas.norton
         if side is None:
@@ -95,12 +106,16 @@ def ported(
     checks += [check for at in numbers for check in port_checks(formulas, at)]
     neither = formulas.thevenin is None and formulas.norton is None
     cautions = [*about_network(network), *(c for at in numbers for c in at.cautions)]
+    known = None if frequencies[0].omega else solver.numbers()
+    slopes = None
+    if wanted.derivative is not None:
+        slopes = port_slopes(formulas, symbol_of(solver, wanted.derivative), known)
     found: list[Failing] = []
     response = None
     if len(ports) == 1 and formulas.thevenin is not None:
         answer = formulas.answers[0]
-        known = None if frequencies[0].omega else solver.numbers()
         found = failing(solver, answer, wanted, known)
+        checks += of_failing(found, f"the open port {ports[0].name}")
         place = Place(
             solver.layout.node_number[ports[0].plus], solver.layout.node_number[ports[0].minus]
         )
@@ -115,6 +130,7 @@ def ported(
         numbers=numbers,
         failing=tuple(found),
         response=response,
+        slopes=slopes,
         symbols=symbols_data(solver),
         legend=tuple(legend_of(solver)),
     )

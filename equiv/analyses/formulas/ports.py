@@ -16,6 +16,7 @@ from equiv.equations.symbolic.expression import (
     ZERO,
     Expression,
     Name,
+    collected,
     negated,
     product,
     quotient,
@@ -129,7 +130,7 @@ def _from_triple(
 ) -> PortFormulas:
     """Voc = Nv/D, Zth = Nz/D, Isc = Nv/Nz: existence is read off D and Nz."""
     d, nz = answer.exists, answer.numerators[-1] != ZERO
-    tops = [product(solver.value(k), answer.numerators[k]) for k in range(len(solver.sources))]
+    tops = _tops(solver, answer)
     impedance = answer.numerators[-1]
     name = "Nz" if nz and _worth_a_name(impedance) else ""
     under = Name("Nz") if name else impedance
@@ -209,12 +210,15 @@ def _side(solver: FormulaSolver, answers: Sequence[Answer], count: int) -> Side:
     def entry(answer: Answer, top: Expression) -> Entry:
         return Entry(top, answer.bottom, top, answer.under)
 
-    terms = tuple(
-        tuple(entry(a, product(solver.value(k), a.numerators[k])) for k in range(count))
-        for a in answers
-    )
+    terms = tuple(tuple(entry(answer, top) for top in _tops(solver, answer)) for answer in answers)
     matrix = tuple(tuple(entry(a, top) for top in a.numerators[count:]) for a in answers)
     return Side(terms, matrix)
+
+
+def _tops(solver: FormulaSolver, answer: Answer) -> list[Expression]:
+    """The numerator of each source, times its value."""
+    pairs = zip(map(solver.value, range(len(solver.sources))), answer.numerators, strict=False)
+    return [collected(product(value, numerator)) for value, numerator in pairs]
 
 
 def _shorted(network: Network, ports: Sequence[Port]) -> Network:

@@ -13,6 +13,8 @@ from equiv.equations.symbolic.infix import text_of
 
 _MOST_LISTED = 12
 _PAIR = 1e-12
+_LONG = 400
+"""Characters of a formula beyond which a table does not have it: some 30 terms."""
 
 
 def response_table(response: InS, of: str, digits: int) -> Table:
@@ -43,9 +45,10 @@ def response_table(response: InS, of: str, digits: int) -> Table:
 
 
 def _end(value: Expression | None, behaviour: Limit) -> Cell:
-    if value is not None:
-        return cell_of(value)
-    return f"grows as {text_of(behaviour.grown())}"
+    text = text_of(behaviour.grown() if value is None else value)
+    if len(text) > _LONG:
+        return "too long (it stands in --json)" if value is not None else "grows without bound"
+    return cell_of(value) if value is not None else f"grows as {text}"
 
 
 def roots_text(roots: Sequence[complex] | None, digits: int) -> str:

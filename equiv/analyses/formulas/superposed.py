@@ -11,9 +11,19 @@ from equiv.analyses.closing import closing_table
 from equiv.analyses.formulas.data import quantity_data
 from equiv.analyses.formulas.legend import legend_of, symbols_data
 from equiv.analyses.formulas.numbers import has_numbers, values_at
-from equiv.analyses.formulas.proof import against_numbers, at_random_point
+from equiv.analyses.formulas.proof import (
+    against_numbers,
+    at_random_point,
+    floating_numbers,
+    of_failing,
+)
 from equiv.analyses.formulas.tables import quantity_tables
-from equiv.analyses.formulas.terms import AtFrequency, FormulaTerm, QuantityFormulas
+from equiv.analyses.formulas.terms import (
+    AtFrequency,
+    FormulaTerm,
+    QuantityFormulas,
+    floating_terms,
+)
 from equiv.analyses.formulas.told import failing, in_s, slope, sum_of
 from equiv.analyses.formulas.values import Value
 from equiv.analyses.formulas.wanted import Wanted, symbol_of
@@ -23,7 +33,7 @@ from equiv.analyses.superposition.term_maker import ratio_unit
 from equiv.analyses.superposition.terms import FrequencyTerms, QuantityTerms
 from equiv.analyses.tables import Table
 from equiv.equations.symbolic.answer import Answer
-from equiv.equations.symbolic.expression import Expression, product, quotient, total
+from equiv.equations.symbolic.expression import Expression, collected, product, quotient, total
 from equiv.equations.symbolic.infix import text_of
 from equiv.equations.symbolic.numbers import Numbers
 from equiv.equations.symbolic.sequence import SingularError
@@ -78,8 +88,9 @@ def superposed(
     wanted: Wanted,
     by: Literal["source", "group"],
     numeric: Numeric,
+    without: Sequence[str] = (),
 ) -> FormulaSuperposition:
-    """The formulas of some quantities (see `equiv.superpose`)."""
+    """The formulas of some quantities (see `equiv.superpose`); `without` are left out, and told."""
     for find in finds:
         if find.quantity.what == "P":
             raise UsageError(
@@ -94,6 +105,11 @@ def superposed(
     maker = _Maker(network, solver, wanted, by)
     found = [maker.quantity(find, numbers[k] if numbers else None) for k, find in enumerate(finds)]
     where = dict(pair for q in found for pair in q.named)
+    lost = {str(q.quantity) for q in found for at in q.frequencies if at.floating}
+    if without:
+        words = f"{', '.join(without)}: a power is no sum of terms and has no formula here"
+        cautions.append(Caution("no-formula", words))
+    cautions += [floating_numbers(f"formulas of {name}") for name in sorted(lost)]
     return FormulaSuperposition(
         network,
         checks=tuple(check for q in found for check in q.checks),
@@ -154,19 +170,21 @@ class _Maker:
         ]
         proof = at_random_point(self.solver, answer, q, str(q))
         checks = [proof, *(c for k in at if (c := against_numbers(k, str(q))) is not None)]
+        first = numbers[0] if not self.frequencies[0].omega else None
+        fails = failing(self.solver, answer, self.wanted, first)
+        checks += of_failing(fails, str(q))
         tops = [self._top(answer, term) for term in self.terms]
         named = [str(network.sources[k].name) for k in range(len(network.sources))]
-        first = numbers[0] if not self.frequencies[0].omega else None
         return QuantityFormulas(
             quantity=q, label=find.label, unit=q.unit, heading=network.describe(q),
             positive=positive_words(network, q), answer=answer, terms=tuple(rows),
             total=Value(quotient(total(tops), answer.denominator)),
             frequencies=tuple(at), checks=tuple(checks),
-            failing=tuple(failing(self.solver, answer, self.wanted, first)),
+            failing=tuple(fails),
             slopes=self._slopes(answer, first),
             slope_words=self._slope_words(q.unit),
             response=in_s(network, self.solver, answer, q, named),
-            degree=None if answer.family is None else answer.family.degree,
+            degree=answer.degree,
         )  # fmt: skip
 
     def _answer(self, find: Find) -> Answer:
@@ -185,7 +203,8 @@ class _Maker:
         return answer
 
     def _top(self, answer: Answer, term: _Term) -> Expression:
-        return total([product(self.solver.value(k), answer.numerators[k]) for k in term.members])
+        tops = [product(self.solver.value(k), answer.numerators[k]) for k in term.members]
+        return total(list(map(collected, tops)))
 
     def _term(self, answer: Answer, term: _Term, unit: str) -> FormulaTerm:
         sources = [self.network.sources[k] for k in term.members]
@@ -227,17 +246,24 @@ class _Maker:
         ]
         chosen = [row for row, is_here in zip(rows, here, strict=True) if is_here]
         contributions = [numbers.of(row.contribution) for row in chosen]
+        coefficients = [
+            None if r.coefficient is None else numbers.of(r.coefficient) for r in chosen
+        ]
+        floating = floating_terms(chosen, contributions, numeric)
+        for place, row in enumerate(chosen):
+            if row.source in floating:
+                coefficients[place] = floating[row.source].coefficient
+                contributions[place] = floating[row.source].contribution
         known = [c for c in contributions if c is not None]
         return AtFrequency(
             frequency=frequency,
             terms=tuple(chosen),
             values=tuple(None if r.value is None else numbers.of(r.value) for r in chosen),
-            coefficients=tuple(
-                None if r.coefficient is None else numbers.of(r.coefficient) for r in chosen
-            ),
+            coefficients=tuple(coefficients),
             contributions=tuple(contributions),
             total=sum(known, 0j) if len(known) == len(contributions) else None,
             numeric=numeric,
+            floating=frozenset(floating),
         )
 
     def _slope_words(self, unit: str) -> str:

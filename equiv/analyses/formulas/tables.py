@@ -9,7 +9,7 @@ from equiv.analyses.formulas.terms import AtFrequency, FormulaTerm, QuantityForm
 from equiv.analyses.formulas.values import Where, cell_of
 from equiv.analyses.headings import frequency_words
 from equiv.analyses.tables import Cell, Column, Row, Table
-from equiv.equations.symbolic.expression import Expression, quotient
+from equiv.equations.symbolic.expression import Expression, names_in, quotient
 from equiv.network import Network
 
 DIRECTION = "Each term is one source's alone; every controlled source stays in place."
@@ -65,7 +65,8 @@ def _term_table(network: Network, q: QuantityFormulas, digits: int) -> Table:
 
 def _frequencies(q: QuantityFormulas) -> tuple[str, ...]:
     first = q.frequencies[0].frequency
-    in_s = q.response is not None or q.answer.family is None
+    parts = [q.total.expression, q.answer.denominator, *(part for _, part in q.answer.where)]
+    in_s = any("s" in names_in(part) for part in parts)
     words = "Formulas in the values of the elements"
     if len(q.frequencies) > 1 or not first.omega:
         return (words + (" and s" if in_s else ""),)
@@ -101,7 +102,8 @@ def _real(at: AtFrequency, value: complex | None) -> Cell:
 def length_words(terms: int | None, degree: int | None) -> str:
     """How long the formula is, in words."""
     if terms is None:
-        return "Written out, it would have more terms than are counted."
+        degree_words = f" The degree in s is {degree}." if degree else ""
+        return f"Written out, it would have more terms than are counted.{degree_words}"
     count = f"{terms:,}".replace(",", " ") + (" terms" if terms != 1 else " term")
     in_s = f", and the degree {degree} in s" if degree else ""
     return f"Written out, the longest of its polynomials has {count}{in_s}."

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from equiv.analyses.formulas.told import Failing, InS
 from equiv.analyses.formulas.values import Value, Where
 from equiv.analyses.result import Check
-from equiv.analyses.superposition.terms import FrequencyTerms
+from equiv.analyses.superposition.terms import FrequencyTerms, Term
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
 from equiv.equations.symbolic.answer import Answer
@@ -45,6 +46,8 @@ class AtFrequency:
     contributions: tuple[complex | None, ...]
     total: complex | None
     numeric: FrequencyTerms | None
+    floating: frozenset[str] = frozenset()
+    """Sources whose formulas have no number here, though their symbols have: floating point's."""
 
     @property
     def known(self) -> bool:
@@ -78,3 +81,19 @@ class QuantityFormulas:
     def named(self) -> Where:
         """The named parts that its formulas use."""
         return self.answer.used
+
+
+def floating_terms(
+    terms: Sequence[FormulaTerm],
+    contributions: Sequence[complex | None],
+    numeric: FrequencyTerms | None,
+) -> dict[str, Term]:
+    """The floating-point terms of formulas that have no number: a step of theirs divides by zero."""
+    if numeric is None or numeric.refusal:
+        return {}
+    by_name = {term.source: term for term in numeric.terms if term.contribution is not None}
+    return {
+        term.source: by_name[term.source]
+        for term, found in zip(terms, contributions, strict=True)
+        if found is None and term.source in by_name
+    }

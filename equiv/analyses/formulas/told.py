@@ -21,7 +21,15 @@ from equiv.equations.symbolic.conditions import (
     roots_in_s,
     vanishing,
 )
-from equiv.equations.symbolic.expression import Expression, product, quotient, total
+from equiv.equations.symbolic.expression import (
+    ONE,
+    ZERO,
+    Expression,
+    collected,
+    product,
+    quotient,
+    total,
+)
 from equiv.equations.symbolic.family import Family
 from equiv.equations.symbolic.infix import text_of
 from equiv.equations.symbolic.nesting import nested
@@ -43,6 +51,8 @@ class Failing:
     symbol: str
     value: Value | None
     reason: str = ""
+    proved: bool = True
+    """Whether the original equations, with that value, have no unique solution either."""
 
     def sentence(self, what: str, digits: int) -> str:
         """In words."""
@@ -93,28 +103,34 @@ def _vanishing(
         power = degree(polynomial, symbol)
         reason = "D does not depend on it" if not power else f"D has its power {power}"
         return Failing(name, None, reason)
-    return Failing(name, Value(found, numbers.of(found) if numbers else None))
+    proved = found == ZERO or solver.fails_at(symbol, found)
+    return Failing(name, Value(found, numbers.of(found) if numbers else None), "", proved)
 
 
 def slope(solver: FormulaSolver, answer: Answer, source: int, symbol: int) -> Expression | None:
     """The derivative of a source's contribution; None where it is too long to be told."""
     if answer.family is None:
         return None
-    ratio = ratio_of(answer.family, source)
-    own = solver.made.sources[source].only
-    powers = dict(own.powers)
+    return slope_of(solver, ratio_of(answer.family, source), symbol, source)
+
+
+def slope_of(
+    solver: FormulaSolver, ratio: Ratio, symbol: int, source: int | None = None
+) -> Expression | None:
+    """The derivative of a ratio, times a source's value; None where it is too long to be told."""
+    powers = {} if source is None else dict(solver.made.sources[source].only.powers)
     if symbol in powers:
         # u = c·x^p of a shared parameter, or the source's own symbol
         value = Ratio(ratio.top * ratio.top.context().gen(symbol) ** max(powers[symbol], 0),
                       ratio.bottom * ratio.top.context().gen(symbol) ** max(-powers[symbol], 0))  # fmt: skip
-        rest = solver.value(source, without=symbol)
+        rest = solver.value(source, without=symbol) if source is not None else ONE
     else:
-        value, rest = ratio, solver.value(source)
+        value, rest = ratio, ONE if source is None else solver.value(source)
     found = derivative(value, symbol)
     if max(len(found.top), len(found.bottom)) > MOST_TERMS:
         return None
     top, bottom = nested(found.top, solver.names), nested(found.bottom, solver.names)
-    return quotient(product(rest, top), bottom)
+    return quotient(collected(product(rest, top)), bottom)
 
 
 @dataclass(frozen=True)

@@ -10,7 +10,6 @@ from equiv.analyses.tables import FormulaText
 from equiv.equations.symbolic.expression import Expression
 from equiv.equations.symbolic.infix import text_of
 
-_LONGEST_WORD = 40
 Where = list[tuple[str, Expression]]
 
 
@@ -27,11 +26,8 @@ class Value(NamedTuple):
 
 
 def cell_of(expression: Expression) -> FormulaText:
-    """A formula as a cell: text that can be broken into lines, and LaTeX."""
-    text = text_of(expression)
-    if any(len(word) > _LONGEST_WORD for word in text.split()):
-        text = " ".join(map(_with_breaks, text.split()))
-    return FormulaText(text, _latex(expression))
+    """A formula as a cell: text, and LaTeX."""
+    return FormulaText(text_of(expression), _latex(expression))
 
 
 def _latex(expression: Expression) -> Callable[[], str]:
@@ -41,15 +37,3 @@ def _latex(expression: Expression) -> Callable[[], str]:
         return latex_of(expression)
 
     return draw
-
-
-def _with_breaks(word: str) -> str:
-    """A long product with blanks where a line may end."""
-    lines, line = [], ""
-    for factor in word.split("*"):
-        longer = f"{line}*{factor}" if line else factor
-        if line and factor and line[-1] != "*" and len(longer) > _LONGEST_WORD:
-            lines.append(line)
-            longer = f"*{factor}"
-        line = longer
-    return " ".join([*lines, line])

@@ -7,7 +7,7 @@ from typing import NamedTuple
 
 from equiv.analyses.formulas.shared import shared
 from equiv.equations.symbolic.solver import FormulaSolver
-from equiv.equations.symbolic.symbols import NONE_SHARED, Shared
+from equiv.equations.symbolic.symbolised import NONE_SHARED, Shared
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.network import Network
 
@@ -42,7 +42,7 @@ class Wanted(NamedTuple):
         for name in names:
             _require(network, name)
         parameters = [n for n in names if n not in network.elements]
-        return set(names), shared(network, parameters) if parameters else NONE_SHARED
+        return set(names), shared(network, parameters, names) if parameters else NONE_SHARED
 
 
 def _require(network: Network, name: str) -> None:

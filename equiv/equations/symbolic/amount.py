@@ -40,7 +40,9 @@ class Amount:
         kept = tuple(sorted((k, p) for k, p in (powers or {}).items() if p))
         # numbers need not be told apart
         occurrence = next(_occurrences) if kept or s else -1
-        return cls({occurrence: Part(Fraction(number), kept, s)})
+        exact = number if isinstance(number, int | Fraction) else Fraction(number)
+        whole = exact.denominator == 1  # Python's own whole numbers are quicker
+        return cls({occurrence: Part(exact.numerator if whole else exact, kept, s)})
 
     def __eq__(self, other: object) -> bool:
         return bool(other == 0 and not self)
@@ -72,8 +74,7 @@ class Amount:
 
     def __mul__(self, other: Any) -> Amount:
         if isinstance(other, int | Fraction):
-            scaled = {k: p._replace(number=p.number * other) for k, p in self.parts.items()}
-            return Amount(scaled if other else {})
+            return self._scaled(other)
         if not isinstance(other, Amount):
             return NotImplemented  # an array takes its elements one by one
         if not self.parts or not other.parts:
@@ -86,6 +87,19 @@ class Amount:
 
     __rmul__ = __mul__
 
+    def _scaled(self, times: Fraction | int) -> Amount:
+        if times == 1:
+            return self
+        if not times:
+            return Amount({})
+        opposite = times == -1
+        return Amount(
+            {
+                k: Part(-p.number if opposite else p.number * times, p.powers, p.s)
+                for k, p in self.parts.items()
+            }
+        )
+
     def __truediv__(self, other: Any) -> Amount:
         return self * _amount(other).inverse()
 
@@ -95,7 +109,7 @@ class Amount:
     def inverse(self) -> Amount:
         """1 over an amount of one term."""
         part = self.only
-        return Amount.of(1 / part.number, {k: -p for k, p in part.powers}, -part.s)
+        return Amount.of(1 / Fraction(part.number), {k: -p for k, p in part.powers}, -part.s)
 
     @property
     def only(self) -> Part:

@@ -26,6 +26,13 @@ class Answer:
     """How many terms the denominator or the longest numerator has, where that is known."""
     name: str = ""
     """The denominator's own name."""
+    counted: int | None = None
+    """The degree in s where there are no polynomials, if it is known."""
+
+    @property
+    def degree(self) -> int | None:
+        """The degree of the denominator in s."""
+        return self.counted if self.family is None else self.family.degree
 
     @property
     def exists(self) -> bool:

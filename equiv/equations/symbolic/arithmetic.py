@@ -11,7 +11,6 @@ from equiv.elements import Element
 from equiv.elements.element import Frequency
 from equiv.equations.arithmetic import Numbers
 from equiv.equations.symbolic.amount import Amount
-from equiv.errors import Diagnostic, UsageError
 
 S = Amount.of(1, s=1)
 """The complex frequency."""
@@ -27,15 +26,8 @@ class Formulas:
         return objects(values)
 
     def rounded(self, values: Sequence[complex], elements: Sequence[Element]) -> Numbers:
-        """Refused: what a file gives at some frequencies is no function of s."""
-        raise UsageError(
-            Diagnostic(
-                "not-a-formula",
-                f"{elements[0].name} has parameters that a file gives at some frequencies: "
-                "they are no formula",
-                hint="leave it out, or ask for numbers",
-            )
-        )
+        """Not needed: what a file gives has been refused."""
+        raise NotImplementedError
 
     def root(self, squares: Numbers, elements: Sequence[Element]) -> Numbers:
         """Not needed: a coupling has its mutual inductance as one symbol or number."""

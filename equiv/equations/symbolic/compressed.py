@@ -123,17 +123,20 @@ class _Reduced:
     """Rows with the solved unknowns put in."""
 
     def __init__(self, table: fmpq_mat, solved: dict[int, int], width: int) -> None:
-        self.rows: dict[int, dict[int, Fraction]] = {}
-        for column, row in solved.items():
-            entries = ((c, table[row, c]) for c in range(width) if c not in solved)
-            self.rows[column] = {c: Fraction(int(x.p), int(x.q)) for c, x in entries if x}
+        self.table, self.solved = table, solved
+        self.left = [c for c in range(width) if c not in solved]
+
+    def _row(self, row: int) -> dict[int, Fraction]:
+        entries = ((c, self.table[row, c]) for c in self.left)
+        return {c: Fraction(int(x.p), int(x.q)) for c, x in entries if x}
 
     def __call__(self, values: dict[int, Fraction]) -> dict[int, Fraction]:
         found: dict[int, Fraction] = {}
         for column, value in values.items():
             # A solved unknown is minus the rest of its row.
-            known = self.rows.get(column)
-            rest = {column: value} if known is None else {c: -x * value for c, x in known.items()}
+            row = self.solved.get(column)
+            known = {} if row is None else self._row(row)
+            rest = {column: value} if row is None else {c: -x * value for c, x in known.items()}
             for c, x in rest.items():
                 found[c] = found.get(c, Fraction(0)) + x
         return {c: x for c, x in found.items() if x}

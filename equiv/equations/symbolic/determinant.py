@@ -49,7 +49,7 @@ def _with_row(
                 continue
             odd = (used >> column).bit_count() & 1
             _add_product(longer.setdefault(now, {}), entry, minor, odd, symbols)
-    return {used: _cleared(minor) for used, minor in longer.items()}
+    return {used: cleared(minor) for used, minor in longer.items()}
 
 
 def _add_product(into: Terms, entry: Terms, minor: Terms, odd: int, symbols: int) -> None:
@@ -65,9 +65,9 @@ def _add_product(into: Terms, entry: Terms, minor: Terms, odd: int, symbols: int
                 into[product] = into.get(product, 0) + number * coefficient
 
 
-def _cleared(minor: Terms) -> Terms:
+def cleared(terms: Terms) -> Terms:
     """Without the terms that have cancelled."""
-    return {k: c for k, c in minor.items() if c} if 0 in minor.values() else minor
+    return {k: c for k, c in terms.items() if c} if 0 in terms.values() else terms
 
 
 def _in_order(rows: Sequence[MatrixRow]) -> list[tuple[list[tuple[int, Terms]], int]]:
@@ -83,15 +83,16 @@ def _in_order(rows: Sequence[MatrixRow]) -> list[tuple[list[tuple[int, Terms]], 
         for column in row:
             left[column] += 1
     seen, found = 0, []
+    last = sum(1 << column for column, count in enumerate(left) if count == 1)
     while waiting:
-        last = sum(1 << column for column, count in enumerate(left) if count == 1)
-        best = min(
-            waiting,
-            key=lambda r: ((masks[r] & ~seen).bit_count() - (masks[r] & last).bit_count(), r),
+        _, best = min(
+            [((masks[r] & ~seen).bit_count() - (masks[r] & last).bit_count(), r) for r in waiting]
         )
         waiting.remove(best)
+        found.append((list(rows[best].items()), masks[best] & last))
         seen |= masks[best]
         for column in rows[best]:
             left[column] -= 1
-        found.append((list(rows[best].items()), masks[best] & last))
+            if left[column] == 1:
+                last |= 1 << column
     return found

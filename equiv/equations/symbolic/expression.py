@@ -149,6 +149,13 @@ def _cancelled(top: Expression, bottom: Expression) -> tuple[Expression, Express
     return left, under
 
 
+def collected(expression: Expression) -> Expression:
+    """Equal factors as one power, above and below."""
+    if isinstance(expression, Quotient):
+        return quotient(collected(expression.top), collected(expression.bottom))
+    return product(*(power(base, p) for base, p in _powers(expression).items()))
+
+
 def _powers(expression: Expression) -> dict[Expression, int]:
     """The factors of a product, each with its power."""
     found: dict[Expression, int] = {}

@@ -2,17 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property, reduce
 from math import gcd
-from operator import and_
 
 import numpy as np
 from flint import Ordering, fmpz_mpoly, fmpz_mpoly_ctx
 
 from equiv.equations.symbolic.bordered import MARKER, Expansion
-from equiv.equations.symbolic.coprime import coprime
+from equiv.equations.symbolic.coprime import Listed, coprime
 
 Exponents = tuple[int, ...]
 _MACHINE_WORD = 62
@@ -62,11 +61,13 @@ def family(expansion: Expansion, count: int, sources: int) -> Family:
     parts = expansion.parted()
     terms = [parts.get(kind, {}) for kind in (MARKER, *range(sources))]
     plain = _plain(expansion, count)
-    if plain is None:
-        powers = [_added(expansion, part, count) for part in terms]
-    else:
-        powers = _spread(terms, plain, expansion.keys.shift)
-    return reduced(powers, context(count), least_taken=plain is not None)
+    if plain is not None:
+        return reduced(_spread(terms, plain, expansion.keys.shift), context(count))
+    added = [_added(expansion, part, count) for part in terms]
+    rows = [exponents for part in added for exponents in part]
+    powers = np.array(rows, np.int64).reshape(len(rows), count + 1)
+    numbers = [number for part in added for number in part.values()]
+    return reduced(Listed(powers, numbers, list(map(len, added))), context(count))
 
 
 def _plain(expansion: Expansion, count: int) -> list[tuple[int, bool]] | None:
@@ -86,29 +87,24 @@ def _plain(expansion: Expansion, count: int) -> list[tuple[int, bool]] | None:
 
 def _spread(
     terms: Sequence[dict[int, int]], plain: Sequence[tuple[int, bool]], shift: int
-) -> list[dict[Exponents, int]]:
-    """Keys as exponents: all terms times the symbols that stand below, so that none is negative.
+) -> Listed:
+    """The bits of the keys as powers, and what stands above them as that of s.
 
-    The powers that every term has are left out.
+    All is taken times the symbols that stand below, so that no power is negative.
     """
-    inverted = sum(1 << bit for bit, below in plain if below)
+    keys = [key for part in terms for key in part]
     bits = [bit for bit, _ in plain]
-    common = reduce(and_, (key ^ inverted for part in terms for key in part), (1 << shift) - 1)
-    lowest = min((key >> shift for part in terms for key in part), default=0)
-    found = []
-    for part in terms:
-        keys = [(key ^ inverted ^ common) - (lowest << shift) for key in part]
-        found.append(dict(zip(_exponents(keys, bits, shift), part.values(), strict=True)))
-    return found
-
-
-def _exponents(keys: list[int], bits: list[int], shift: int) -> Iterable[Exponents]:
-    """The bits of each key, and what stands above them."""
-    if max(keys, default=0) >= 1 << _MACHINE_WORD:
-        return [(*[key >> bit & 1 for bit in bits], key >> shift) for key in keys]
-    columns = np.array(keys, np.int64)[:, None]
-    powers = np.hstack([columns >> np.array(bits, np.int64) & 1, columns >> shift])
-    return map(tuple, powers.tolist())
+    powers = np.empty((len(keys), len(bits) + 1), np.int64, "F")
+    if max(keys, default=0) < 1 << _MACHINE_WORD:
+        listed = np.array(keys, np.int64)
+        powers[:, :-1] = listed[:, None] >> np.array(bits, np.int64) & 1
+        powers[:, -1] = listed >> shift
+    else:
+        for row, key in zip(powers, keys, strict=True):
+            row[:] = [*[key >> bit & 1 for bit in bits], key >> shift]
+    powers[:, :-1] ^= np.array([below for _, below in plain], np.int64)
+    numbers = [number for part in terms for number in part.values()]
+    return Listed(powers, numbers, list(map(len, terms)))
 
 
 def _added(expansion: Expansion, terms: dict[int, int], count: int) -> dict[Exponents, int]:
@@ -120,22 +116,18 @@ def _added(expansion: Expansion, terms: dict[int, int], count: int) -> dict[Expo
     return {exponents: number for exponents, number in found.items() if number}
 
 
-def reduced(
-    terms: Sequence[dict[Exponents, int]], ring: fmpz_mpoly_ctx, least_taken: bool = False
-) -> Family:
+def reduced(listed: Listed, ring: fmpz_mpoly_ctx) -> Family:
     """Without common powers (which may be negative), common numbers, and common factors."""
-    least = [] if least_taken else _least(exponents for part in terms for exponents in part)
-    shared = reduce(gcd, (number for part in terms for number in part.values()), 0) or 1
-    if any(least) or shared != 1:
-        least = least or [0] * len(ring.names())
-        terms = [
-            {
-                tuple([e - low for e, low in zip(exponents, least, strict=True)]): number // shared
-                for exponents, number in part.items()
-            }
-            for part in terms
-        ]
-    if not coprime(terms):
+    powers, numbers, counts = listed
+    if numbers:
+        powers = powers - powers.min(axis=0)
+    shared = gcd(*numbers)
+    if shared > 1:
+        numbers = [number // shared for number in numbers]
+    listed = Listed(powers, numbers, counts)
+    rows = list(zip(*powers.T.tolist(), strict=True))
+    terms = [dict(zip(rows[part], numbers[part], strict=True)) for part in listed.slices]
+    if not coprime(listed):
         polynomials = [ring.from_dict(part) for part in terms]
         there = sorted(filter(None, polynomials), key=len)
         common = reduce(lambda a, b: a.gcd(b), there, ring.constant(0))
@@ -151,9 +143,3 @@ def _whole(polynomial: fmpz_mpoly) -> dict[Exponents, int]:
     """Python's own whole numbers, which everything can be done with."""
     terms = polynomial.to_dict().items()
     return {tuple(map(int, exponents)): int(number) for exponents, number in terms}
-
-
-def _least(exponents: Iterable[Exponents]) -> list[int]:
-    """The least power of every symbol."""
-    rows = zip(*exponents, strict=True)
-    return [min(row) for row in rows]

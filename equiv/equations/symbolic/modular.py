@@ -31,6 +31,12 @@ class Point:
         self.values = [source.randrange(1, PRIME) for _ in range(count)]
         self.s = source.randrange(1, PRIME)
 
+    def at(self, symbol: int, value: int) -> Point:
+        """The same point with another value of one symbol."""
+        found = Point(len(self.values))
+        found.values[symbol] = value
+        return found
+
     def of_part(self, part: Part) -> int:
         """The value of a term."""
         value = residue(part.number) * pow(self.s, part.s, PRIME)
@@ -95,6 +101,11 @@ class ModularSystem:
         except ZeroDivisionError:
             return None
         return [[int(x) for x in column] for column in zip(*found.tolist(), strict=True)]
+
+    @property
+    def singular(self) -> bool:
+        """Whether there is no unique solution."""
+        return self.matrix is not None and int(self.matrix.det()) == 0
 
     def excitations(self) -> list[list[int]]:
         """B, a column a source."""

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Callable, Mapping, Sequence
-from functools import reduce
+from functools import lru_cache, reduce
 from math import gcd
 from typing import Any
 
@@ -172,11 +172,17 @@ def _brackets(piece: Expression) -> list[Expression]:
     return [factor for factor in factors if isinstance(factor, Sum)]
 
 
+@lru_cache(1024)
+def _name(name: str) -> Name:
+    """A name, once for the many terms that have it."""
+    return Name(name)
+
+
 def _monomial(exponents: Exponents, number: int, names: Sequence[str]) -> Expression:
     found: list[Expression] = [] if number == 1 else [Number(number)]
     for name, exponent in zip(names, exponents, strict=True):
         if exponent:
-            found.append(Name(name) if exponent == 1 else Power(Name(name), int(exponent)))
+            found.append(_name(name) if exponent == 1 else Power(_name(name), int(exponent)))
     if len(found) > 1:
         return Product(tuple(found))
     return found[0] if found else Number(1)

@@ -15,6 +15,7 @@ from equiv.equations.symbolic.answer import Answer
 from equiv.equations.symbolic.arithmetic import FORMULAS, S
 from equiv.equations.symbolic.bordered import Bordered, Place, bordered
 from equiv.equations.symbolic.compressed import compressed
+from equiv.equations.symbolic.degree import degree_in_s
 from equiv.equations.symbolic.expression import (
     ONE,
     ZERO,
@@ -33,7 +34,8 @@ from equiv.equations.symbolic.modular import PRIME, ModularSystem, Point, residu
 from equiv.equations.symbolic.nesting import Where, expanded, nested, with_repeats_named
 from equiv.equations.symbolic.numbers import Numbers
 from equiv.equations.symbolic.sequence import sequence
-from equiv.equations.symbolic.symbols import NONE_SHARED, Named, Shared, symbolised
+from equiv.equations.symbolic.symbolised import NONE_SHARED, Shared, symbolised
+from equiv.equations.symbolic.symbols import Named
 from equiv.equations.system import Row, System
 from equiv.errors import Diagnostic, UsageError
 from equiv.network import Network
@@ -171,7 +173,8 @@ class FormulaSolver:
 
     def _sequence(self, matrix: Bordered, found: Family | None, terms: int | None) -> Answer:
         where, coefficients = sequence(matrix, self.names, self.point, lambda: self.new_name("x"))
-        return Answer("sequence", ONE, tuple(coefficients), tuple(where), found, terms)
+        degree = degree_in_s(matrix, self.point) if found is None else None
+        return Answer("sequence", ONE, tuple(coefficients), tuple(where), found, terms, "", degree)
 
     def new_name(self, letter: str) -> str:
         """A name for a part: a letter and the next number."""
@@ -217,6 +220,14 @@ class FormulaSolver:
             above, below = _modular(top, values), known[id(bottom)]
             wrong += int(above - below * nmod(expected % PRIME, PRIME)) != 0 or not int(below)
         return wrong
+
+    def fails_at(self, symbol: int, value: Expression) -> bool:
+        """Whether the original equations have no solution with that value of a symbol.
+
+        All others are at the random point.
+        """
+        found = int(_modular(value, self.point.by_name(self.names)))
+        return ModularSystem(self.made.network, self.point.at(symbol, found)).singular
 
     def numbers(self, s: complex = 0j, values: dict[str, complex] | None = None) -> Numbers:
         """The values of the symbols at one s, with other ones for some of them."""

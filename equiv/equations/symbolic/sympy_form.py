@@ -7,6 +7,7 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from equiv.equations.symbolic.expression import (
+    ONE,
     Expression,
     Name,
     Number,
@@ -59,20 +60,31 @@ def latex_of(expression: Expression) -> str:
     return str(sympy.latex(_unevaluated(expression), order="none", symbol_names=names))
 
 
-_NAME = re.compile(r"(.*?)_*(\d*)")
+_NAME = re.compile("([A-Za-z]+)([0-9]*)")
+_GREEK = frozenset(
+    {
+        "alpha", "beta", "gamma", "delta", "epsilon", "zeta", "eta", "theta", "iota", "kappa",
+        "lambda", "mu", "nu", "xi", "pi", "rho", "sigma", "tau", "upsilon", "phi", "chi", "psi",
+        "omega", "Gamma", "Delta", "Theta", "Lambda", "Xi", "Pi", "Sigma", "Upsilon", "Phi",
+        "Psi", "Omega",
+    }
+)  # fmt: skip
 
 
 def _latex_name(name: str) -> str:
-    """A name in LaTeX: R1 with an index, Rload upright, a Greek letter as one."""
-    import sympy
+    """A name in LaTeX: R1 with an index, Rload upright, a Greek letter as one.
 
+    No two names look the same: one with an underscore is upright as a whole.
+    """
     match = _NAME.fullmatch(name)
-    assert match is not None
-    word, index = match[1], match[2]
-    own = str(sympy.latex(sympy.Symbol(word))) if word else ""
-    if len(word) != 1 and not own.startswith("\\"):
-        own = rf"\mathrm{{{word.replace('_', chr(92) + '_')}}}"
-    return f"{own}_{{{index}}}" if index else own
+    if match is None:
+        return rf"\mathrm{{{name.replace('_', chr(92) + '_')}}}"
+    word, index = match.groups()
+    if word in _GREEK:
+        word = rf"\{word}"
+    elif len(word) > 1:
+        word = rf"\mathrm{{{word}}}"
+    return f"{word}_{{{index}}}" if index else word
 
 
 def _unevaluated(expression: Expression) -> Any:
@@ -91,4 +103,6 @@ def _unevaluated(expression: Expression) -> Any:
             return sympy.Mul(*map(_unevaluated, factors), evaluate=False)
         case Quotient(top, bottom):
             under = sympy.Pow(_unevaluated(bottom), -1, evaluate=False)
+            if top == ONE:
+                return under
             return sympy.Mul(_unevaluated(top), under, evaluate=False)

@@ -1,15 +1,18 @@
 """The determinant by remembered minors, and numbers taken out before it, against sympy."""
 
+import itertools
 import random
 
+import numpy as np
 import pytest
 import sympy
+from flint import fmpz_mpoly
 
 import equiv
 from equiv.equations.symbolic.amount import TooLargeError
 from equiv.equations.symbolic.bordered import bordered
 from equiv.equations.symbolic.compressed import compressed
-from equiv.equations.symbolic.coprime import coprime
+from equiv.equations.symbolic.coprime import Listed, coprime
 from equiv.equations.symbolic.determinant import determinant
 from equiv.equations.symbolic.family import context, family
 from equiv.equations.symbolic.solver import FormulaSolver
@@ -62,31 +65,58 @@ def test_nothing_of_a_singular_matrix() -> None:
     assert determinant([{0: {0: 1}}, {0: {0: 1}}], 0, 10) == {}
 
 
+def listed(*polynomials: fmpz_mpoly) -> Listed:
+    terms = [p.to_dict() for p in polynomials]
+    powers = np.array([e for t in terms for e in t], np.int64)
+    return Listed(powers, [int(c) for t in terms for c in t.values()], list(map(len, terms)))
+
+
+def some(draw: random.Random, symbols: range, degree: int, count: int) -> fmpz_mpoly:
+    """A polynomial linear in some of six symbols, and of a degree in s."""
+    return context(6).from_dict(
+        {
+            (*(draw.randint(0, 1) * (i in symbols) for i in range(6)), draw.randint(0, degree)):
+            draw.choice((1, -2, 3))
+            for _ in range(count)
+        }
+    )  # fmt: skip
+
+
+@pytest.mark.parametrize("degree", [0, 1, 3])
 @pytest.mark.parametrize("seed", range(20))
-def test_what_is_called_coprime_is(seed: int) -> None:
+def test_what_is_called_coprime_is(seed: int, degree: int) -> None:
     draw = random.Random(seed)
-    ring = context(6)
+    one, other = (some(draw, range(6), degree, 60) for _ in range(2))
+    assert one.gcd(other).is_constant()
+    assert coprime(listed(one, other))
 
-    def linear(first: int, last: int, count: int) -> object:
-        return ring.from_dict(
-            {
-                (*(draw.randint(0, 1) * (first <= i < last) for i in range(6)), 0): draw.choice(
-                    (1, -2, 3)
-                )
-                for _ in range(count)
-            }
-        )
 
-    common = linear(0, 3, 4) if seed % 2 else ring.constant(1)
-    one, other = (linear(3, 6, 9) * common + 0 for _ in range(2))
-    if not seed % 2:  # long enough to be looked at
-        one, other = linear(0, 6, 60), linear(0, 6, 60)
-    terms = [{e: int(c) for e, c in p.to_dict().items()} for p in (one, other)]
-    found = coprime(terms)
-    truly = one.gcd(other).is_constant()
-    assert truly or not found
-    if not seed % 2:
-        assert found == truly
+@pytest.mark.parametrize("seed", range(20))
+@pytest.mark.parametrize("where", [range(2), range(0)])
+def test_a_common_factor_is_not_overlooked(seed: int, where: range) -> None:
+    draw = random.Random(seed)
+    s = context(6).gens()[-1]
+    common = some(draw, where, 0, 4) + s + 9
+    one, other = (some(draw, range(2, 6), 2, 60) * common for _ in range(2))
+    assert len(one) > 24  # long enough to be looked at
+    assert not coprime(listed(one, other))
+
+
+@pytest.mark.parametrize(("nodes", "trees", "pairs"), [(5, 125, 50), (6, 1296, 432)])
+def test_complete_graphs(nodes: int, trees: int, pairs: int) -> None:
+    """n^(n - 2) trees (A. Cayley, 1889), 2 n^(n - 3) pairs of trees that part two nodes."""
+    names = [*(f"n{i}" for i in range(1, nodes)), "gnd"]
+    lines = ["current J gnd > n1 1 A"]
+    for i, (a, b) in enumerate(itertools.combinations(names, 2)):
+        lines.append(f"resistor R{i} {a} {b} 1 ohm")
+    solver = FormulaSolver(equiv.parse("\n".join(lines) + "\n"))
+    matrix = bordered(solver.system, solver.row(quantity("V:n1")))
+    as_it_is, found = (
+        family(m.expanded(10**6), len(solver.named), 1) for m in (matrix._replace(nodes=0), matrix)
+    )
+    assert [len(terms) for terms in found.terms] == [trees, pairs]
+    assert {number for terms in found.terms for number in terms.values()} == {1}
+    assert found == as_it_is
 
 
 @pytest.mark.parametrize("seed", range(8))

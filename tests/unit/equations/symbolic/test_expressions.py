@@ -160,7 +160,7 @@ def test_roots_from_exact_coefficients() -> None:
 
 
 def test_latex() -> None:
-    tree = quotient(product(Name("Vs"), Name("R2")), total([Name("R1"), Name("Rload_2")]))
+    tree = quotient(product(Name("Vs"), Name("R2")), total([Name("R1"), Name("Rload2")]))
     assert latex_of(tree) == r"\frac{\mathrm{Vs} R_{2}}{R_{1} + \mathrm{Rload}_{2}}"
 
 
