@@ -13,7 +13,7 @@ from laws.random_networks import quantities, seeded, seeds
 import equiv
 from equiv.errors import NoUniqueSolutionError
 
-few = settings(seeded, max_examples=8)
+few = settings(seeded, max_examples=4)
 
 
 def parts(value: Any) -> tuple[Fraction, Fraction]:

@@ -67,19 +67,19 @@ def checked(network: equiv.Network, asked: list[str], seed: int, **options: Any)
     return compared
 
 
-@pytest.mark.parametrize("seed", range(15))
+@pytest.mark.parametrize("seed", range(8))
 def test_formulas_at_dc(seed: int) -> None:
     maker = Maker(seed)
     assert checked(equiv.parse(maker.text), quantities(maker), seed)
 
 
-@pytest.mark.parametrize("seed", range(600, 615))
+@pytest.mark.parametrize("seed", range(600, 608))
 def test_formulas_in_s(seed: int) -> None:
     maker = Maker(seed, ac=True)
     assert checked(equiv.parse(maker.text), quantities(maker), seed)
 
 
-@pytest.mark.parametrize("seed", range(24))
+@pytest.mark.parametrize("seed", range(12))
 def test_formulas_of_every_kind_of_device(seed: int) -> None:
     maker = Maker(seed, ac=bool(seed % 2), controlled=seed % 3 == 0)
     text = maker.text + devices(maker, random.Random(seed))
@@ -129,7 +129,7 @@ def loaded(network: equiv.Network, ports: list[str], seed: int) -> None:
             assert amperes[p] == numbers["current"][p] - drawn
 
 
-@pytest.mark.parametrize("seed", range(10))
+@pytest.mark.parametrize("seed", range(6))
 def test_ports_under_random_loads(seed: int) -> None:
     maker = Maker(seed, ac=bool(seed % 2))
     network = equiv.parse(maker.text)
