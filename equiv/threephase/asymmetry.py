@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import NamedTuple
 
-from equiv.threephase.standard import asymmetry_factor, peak_factor
+from equiv.threephase.standard import SLOW, asymmetry_factor, peak_factor
 
 NO_RESISTANCE = 1e-12
 """A resistance (or a capacitive reactance) below this part of the impedance is none."""
@@ -39,7 +39,7 @@ def asymmetry(per_volt: complex, slow: complex, largest: float) -> Asymmetry:
         return Asymmetry(None, None, None, None, CAPACITIVE)
     resistive = abs(loop.real) > NO_RESISTANCE * abs(loop)
     ratio = loop.imag / loop.real if resistive else None
-    r_over_x = 0.4 * slow_loop.real / slow_loop.imag if slow_loop.imag > 0 else math.inf
+    r_over_x = SLOW * slow_loop.real / slow_loop.imag if slow_loop.imag > 0 else math.inf
     kappa = peak_factor(r_over_x)
     first = asymmetry_factor(math.inf if ratio is None else ratio)
     return Asymmetry(ratio, kappa, kappa * math.sqrt(2) * largest, first * largest)

@@ -14,6 +14,11 @@ STARS_AND_NETWORK = "star points and network"
 """The name of what star points, line charging and unequal ratios give, where they are together."""
 
 
+def phase_of_terms(type_: str) -> str:
+    """The phase that the terms of a type of fault are about: `a`, or `b` where b and c are joined."""
+    return "a" if type_ in ("three-phase", "line-ground") else "b"
+
+
 class Phases(NamedTuple):
     """A quantity in each phase."""
 
@@ -108,4 +113,4 @@ class FaultCase(NamedTuple):
     @property
     def phase(self) -> str:
         """The phase that the terms are about."""
-        return "a" if self.type in ("three-phase", "line-ground") else "b"
+        return phase_of_terms(self.type)

@@ -5,12 +5,11 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 
 from equiv.threephase.asymmetry import asymmetry
-from equiv.threephase.cases import FaultCase, FaultTerm, Phases
+from equiv.threephase.cases import FaultCase, FaultTerm, Phases, phase_of_terms
 from equiv.threephase.cases import Sequence as SequenceValues
 from equiv.threephase.contributions import contributions
 from equiv.threephase.coordinates.phase_coordinates import PhaseCoordinates
 from equiv.threephase.grouping import Groups
-from equiv.threephase.model import Shunt
 from equiv.threephase.proof import Apart, apart, three_phase
 from equiv.threephase.reasons import why
 from equiv.threephase.relays import RelayFinder
@@ -23,8 +22,9 @@ from equiv.threephase.sequence.faulted import (
     per_volt,
     scaled_fault,
 )
-from equiv.threephase.sequence.sequences import there
+from equiv.threephase.sequence.sequences import machines
 from equiv.threephase.sequence.solve import SystemSolution
+from equiv.threephase.words import phase_of
 
 
 class CaseMaker:
@@ -46,9 +46,7 @@ class CaseMaker:
         self.bolted: dict[str, float] = {}
         """The three-phase current (A) of the buses so far."""
         system, view = solution.system, solution.view
-        self.machines = [
-            item for item in there(system, view) if isinstance(item, Shunt) and item.drives
-        ]
+        self.machines = machines(system, view)
         self.groups = Groups(system, [item.name for item in self.machines], by)
 
     def case(self, at: AtBus, slow: AtBus, fault: Fault) -> FaultCase:
@@ -76,7 +74,7 @@ class CaseMaker:
             first.peak,
             first.asymmetrical_rms,
             self.terms(found),
-            phases.a if fault.type in ("three-phase", "line-ground") else phases.b,
+            phase_of(phases, phase_of_terms(fault.type)),
             _without_rounding(again.currents, self.bolted[at.name]) if again else None,
             {bus: found.bus_voltages(bus) for bus in self.solution.buses},
             tuple(relay.relay(found, self.groups) for relay in self.relays),

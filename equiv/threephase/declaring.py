@@ -10,7 +10,6 @@ from equiv.analyses.kinds import sections
 if TYPE_CHECKING:
     from equiv.threephase.model import Item
 
-FRACTION = ("", "%")
 IMPEDANCE = ("%", "pu", "ohm")
 
 

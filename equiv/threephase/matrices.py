@@ -12,10 +12,9 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.network import Progress
 from equiv.threephase.grouping import Groups
-from equiv.threephase.model import Shunt
 from equiv.threephase.sequence.connection import Impedances
 from equiv.threephase.sequence.networks import injection
-from equiv.threephase.sequence.sequences import amperes_of, ohms_of, there
+from equiv.threephase.sequence.sequences import amperes_of, machines, ohms_of
 from equiv.threephase.sequence.solve import INFINITE, SystemSolution
 from equiv.threephase.standard import voltage_factor
 
@@ -39,7 +38,7 @@ class Matrices:
         system, view = solution.system, solution.view
         self.ohms = np.array([ohms_of(system.buses[bus], system.base) for bus in buses])
         self.amperes = np.array([amperes_of(system.buses[bus], system.base) for bus in buses])
-        self.machines = [i for i in there(system, view) if isinstance(i, Shunt) and i.drives]
+        self.machines = machines(system, view)
         self.groups = Groups(system, [item.name for item in self.machines], by)
         self.z = self._impedances(solution, progress, "driving-point impedances")
         self.progress = progress

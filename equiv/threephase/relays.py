@@ -22,7 +22,7 @@ from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers
 from equiv.errors import Diagnostic, UsageError, nearest
 from equiv.threephase.asymmetry import NO_CURRENT
-from equiv.threephase.cases import FaultTerm, Phases, Relay, Sequence
+from equiv.threephase.cases import FaultTerm, Phases, Relay, Sequence, phase_of_terms
 from equiv.threephase.grouping import Groups
 from equiv.threephase.model import Item, Link, OneLine, Shunt, Transformer
 from equiv.threephase.sequence.connection import term_weights
@@ -31,6 +31,7 @@ from equiv.threephase.sequence.faulted import CANCELLED, Faulted
 from equiv.threephase.sequence.networks import injection
 from equiv.threephase.sequence.sequences import Charging, Series, ToEarth, amperes_of
 from equiv.threephase.sequence.solve import SequenceSolution, SystemSolution
+from equiv.threephase.words import phase_of
 
 
 class Place(NamedTuple):
@@ -174,7 +175,7 @@ class RelayFinder:
     def _impedance(self, faulted: Faulted, phases: Phases, gross: float) -> complex | None:
         """The apparent impedance (ohm); None where the current of its loop is only rounding."""
         voltages = faulted.bus_voltages(self.place.bus)
-        if faulted.fault.type in ("three-phase", "line-ground"):
+        if phase_of_terms(faulted.fault.type) == "a":
             across, through = voltages.a, phases.a
         else:
             across, through = voltages.b - voltages.c, phases.b - phases.c
@@ -188,7 +189,7 @@ def _summed(*parts: Numbers | complex) -> Numbers:
 
 
 def _in_phase(phases: Phases, faulted: Faulted) -> complex:
-    return phases.a if faulted.fault.type in ("three-phase", "line-ground") else phases.b
+    return phase_of(phases, phase_of_terms(faulted.fault.type))
 
 
 def _response(of: SequenceSolution, place: Place) -> Response | None:

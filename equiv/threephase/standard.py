@@ -10,6 +10,8 @@ import math
 
 LOW_VOLTAGE = 1000.0
 """The highest nominal voltage (V, line to line) that counts as low voltage."""
+SLOW = 0.4
+"""Part of the system's frequency at which R/X is found for the peak: 20 Hz of 50 Hz."""
 
 
 def voltage_factor(volts: float, case: str, tolerance: float = 0.06) -> float:
@@ -56,7 +58,7 @@ def equivalent_frequency(hertz: float) -> float:
 
     Source: IEC 60909-0:2016, 8.1, method (c).
     """
-    return 0.4 * hertz
+    return SLOW * hertz
 
 
 def asymmetry_factor(x_over_r: float, cycles: float = 0.5) -> float:

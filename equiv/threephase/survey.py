@@ -6,15 +6,22 @@ A case or a table is made when it is asked for, so that 10 000 buses fit into me
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from functools import cached_property
-from typing import Any, overload
+from typing import Generic, TypeVar, overload
 
 import numpy as np
 
 from equiv.equations.layout import Numbers
 from equiv.threephase.asymmetry import Asymmetry, asymmetry
-from equiv.threephase.cases import STARS_AND_NETWORK, FaultCase, FaultTerm, Phases, largest_phase
+from equiv.threephase.cases import (
+    STARS_AND_NETWORK,
+    FaultCase,
+    FaultTerm,
+    Phases,
+    largest_phase,
+    phase_of_terms,
+)
 from equiv.threephase.cases import Sequence as SequenceValues
 from equiv.threephase.contributions import REMAINDER
 from equiv.threephase.matrices import Matrices
@@ -34,6 +41,9 @@ from equiv.threephase.sequence.faulted import (
     unearthed_rise,
 )
 from equiv.threephase.showing.survey_tables import Survey
+
+_K = TypeVar("_K")
+_T = TypeVar("_T")
 
 
 class TermsOfType:
@@ -159,7 +169,7 @@ class OfType(TermsOfType):
             names.append(STARS_AND_NETWORK)
             kinds.append("network")
             terms = np.column_stack([terms, left])
-        phase = "a" if self.fault.type in ("three-phase", "line-ground") else "b"
+        phase = phase_of_terms(self.fault.type)
         zero = rows[totals == 0].tolist()
         reasons = [(of.buses[row], words) for row in zero for words in self.why(row)]
         return Survey(
@@ -170,45 +180,31 @@ class OfType(TermsOfType):
         )  # fmt: skip
 
 
-class SurveyCases(Sequence[FaultCase]):
-    """The cases of a survey, bus by bus and type by type, each made when it is asked for."""
+class WhenAsked(Sequence[_T], Generic[_K, _T]):
+    """What is made of each of some keys, each time that it is asked for."""
 
-    def __init__(self, types: Sequence[OfType]) -> None:
-        self.types = tuple(types)
-        keyed = ((row, n) for n, of in enumerate(types) for row in of.rows.tolist())
-        self._order = sorted(keyed)
+    def __init__(self, keys: Sequence[_K], make: Callable[[_K], _T]) -> None:
+        self._keys, self._make = keys, make
 
     def __len__(self) -> int:
-        return len(self._order)
+        return len(self._keys)
 
     @overload
-    def __getitem__(self, index: int) -> FaultCase: ...
+    def __getitem__(self, index: int) -> _T: ...
     @overload
-    def __getitem__(self, index: slice) -> Sequence[FaultCase]: ...
-    def __getitem__(self, index: Any) -> Any:
+    def __getitem__(self, index: slice) -> Sequence[_T]: ...
+    def __getitem__(self, index: int | slice) -> _T | Sequence[_T]:
         if isinstance(index, slice):
-            return [self[n] for n in range(*index.indices(len(self)))]
-        row, number = self._order[index]
-        return self.types[number].case(row)
-
-    def __iter__(self) -> Iterator[FaultCase]:
-        return (self.types[number].case(row) for row, number in self._order)
+            return WhenAsked(self._keys[index], self._make)
+        return self._make(self._keys[index])
 
 
-class Surveys(Sequence[Survey]):
-    """A survey a type, each made when it is asked for."""
+def cases_of(types: Sequence[OfType]) -> Sequence[FaultCase]:
+    """The cases of surveys, bus by bus and type by type."""
+    keys = sorted((row, n) for n, of in enumerate(types) for row in of.rows.tolist())
+    return WhenAsked(keys, lambda key: types[key[1]].case(key[0]))
 
-    def __init__(self, types: Sequence[OfType]) -> None:
-        self.types = tuple(types)
 
-    def __len__(self) -> int:
-        return len(self.types)
-
-    @overload
-    def __getitem__(self, index: int) -> Survey: ...
-    @overload
-    def __getitem__(self, index: slice) -> Sequence[Survey]: ...
-    def __getitem__(self, index: Any) -> Any:
-        if isinstance(index, slice):
-            return [of.survey() for of in self.types[index]]
-        return self.types[index].survey()
+def surveys_of(types: Sequence[OfType]) -> Sequence[Survey]:
+    """A survey a type."""
+    return WhenAsked(types, OfType.survey)

@@ -24,12 +24,11 @@ from equiv.threephase.sequence.findings import no_earth_path
 from equiv.threephase.sequence.solve import SystemSolution
 from equiv.threephase.showing.setting import source_words
 from equiv.threephase.showing.survey_tables import Survey
-from equiv.threephase.survey import OfType, SurveyCases, Surveys
+from equiv.threephase.standard import SLOW
+from equiv.threephase.survey import OfType, cases_of, surveys_of
 
 FULL_UP_TO = 100
 """Faulted buses up to which a result has voltages, partial currents and relays."""
-SLOW = 0.4
-"""Part of the system's frequency at which R/X is found for the peak: 20 Hz of 50 Hz."""
 _MANY = 8
 
 
@@ -137,7 +136,7 @@ class Work:
             OfType(matrices, fault, [self._kept(bus, fault) for bus in asked.buses], reasons)
             for fault in asked.faults
         ]
-        return Found(SurveyCases(types), Surveys(types), matrices.checks(), False)
+        return Found(cases_of(types), surveys_of(types), matrices.checks(), False)
 
 
 def _columns(cases: Sequence[FaultCase], faults: Sequence[Fault]) -> tuple[Survey, ...]:

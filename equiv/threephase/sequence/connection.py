@@ -21,7 +21,7 @@ from typing import NamedTuple
 import numpy as np
 
 from equiv.equations.layout import Numbers
-from equiv.threephase.cases import Phases, Sequence
+from equiv.threephase.cases import Phases, Sequence, phase_of_terms
 
 A = complex(-0.5, math.sqrt(3) / 2)
 """The operator of 120 degrees."""
@@ -112,6 +112,6 @@ def phases(of: Sequence) -> Phases:
 
 def term_weights(kind: str) -> Sequence:
     """How much of each sequence current is in the phase that the terms are about."""
-    if kind in ("three-phase", "line-ground"):
+    if phase_of_terms(kind) == "a":
         return Sequence(1, 1, 1)
     return Sequence(1, A2, A)

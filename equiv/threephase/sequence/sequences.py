@@ -74,6 +74,11 @@ def there(system: OneLine, view: View) -> Iterator[Item]:
             yield item
 
 
+def machines(system: OneLine, view: View) -> list[Shunt]:
+    """The items with an EMF that are there in a view."""
+    return [item for item in there(system, view) if isinstance(item, Shunt) and item.drives]
+
+
 def parts(system: OneLine, view: View, sequence: int) -> Iterator[Part]:
     """The branches of one sequence network."""
     for item in there(system, view):
