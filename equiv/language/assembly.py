@@ -36,7 +36,7 @@ def assembled(reader: Reader, override: Override | None) -> Network:
         check_override(whole, used, override[1])
     whole.frequency = used or DC
     check(whole, reader.finds, reader.ports)
-    _raise(reader)
+    raise_mistakes(reader)
     title, phasors = reader.once.get("title"), reader.once.get("phasors")
     return Network(
         elements=whole.elements,
@@ -45,10 +45,7 @@ def assembled(reader: Reader, override: Override | None) -> Network:
         ground=whole.ground,
         frequency=used or DC,
         phasors=str(phasors.value) if phasors else "rms",
-        given={
-            name: Given(scope.known[name].value, scope.known[name].unit)
-            for name in reader.top.definitions
-        },
+        given=parameters(reader, scope),
         finds=tuple(asked.what for asked in reader.finds if isinstance(asked.what, Find)),
         ports={n: asked.what for n, asked in reader.ports.items() if isinstance(asked.what, Port)},
         comments={draft.name: draft.comment for draft in whole.drafts.values() if draft.comment},
@@ -56,10 +53,17 @@ def assembled(reader: Reader, override: Override | None) -> Network:
     )
 
 
-def _raise(reader: Reader) -> None:
+def raise_mistakes(reader: Reader) -> None:
+    """Raise what is wrong in a text, or in what was given with it."""
     if reader.reports:
         kind = UsageError if reader.reports.of_arguments else NetworkFileError
         raise kind(reader.reports.diagnostics())
+
+
+def parameters(reader: Reader, scope: Scope) -> dict[str, Given]:
+    """The file's parameters and their values."""
+    known = scope.known
+    return {name: Given(known[name].value, known[name].unit) for name in reader.top.definitions}
 
 
 def require_known(reader: Reader) -> None:
@@ -67,7 +71,7 @@ def require_known(reader: Reader) -> None:
     known = reader.top.definitions
     unknown = [name for name in reader.given if name not in known]
     if unknown:
-        _raise(reader)
+        raise_mistakes(reader)
         raise UsageError([_unknown_given(name, list(known)) for name in unknown])
 
 
@@ -92,10 +96,11 @@ def _evaluated(
 ) -> Frequency | None:
     if isinstance(value, Frequency):
         return value
-    return _attempt(lambda: value.evaluate(scope), statement, reader)
+    return attempt(lambda: value.evaluate(scope), statement, reader)
 
 
-def _attempt(work: Callable[[], _T], statement: Statement, reader: Reader) -> _T | None:
+def attempt(work: Callable[[], _T], statement: Statement, reader: Reader) -> _T | None:
+    """What some work on a statement makes; None where it is wrong, which is reported."""
     try:
         return work()
     except Mistake as mistake:
@@ -126,7 +131,7 @@ def _elements(reader: Reader, scope: Scope, ground: str) -> Whole:
 
 
 def _add(whole: Whole, draft: Draft, scope: Scope, reader: Reader) -> None:
-    element = _attempt(lambda: draft.realise(scope), draft.statement, reader)
+    element = attempt(lambda: draft.realise(scope), draft.statement, reader)
     if element is not None:
         whole.add(element, draft)
     else:

@@ -25,12 +25,7 @@ def load(
     `given` replaces values of the file's parameters, `frequency` its frequency. Raises
     `FileAccessError`, `NetworkFileError` with every mistake in the file, or `UsageError`.
     """
-    path = Path(path)
-    data = read_bytes(path)
-    text = decoded(data, path.name)
-    return read_network(
-        Text(path.name, text), path, given, frequency, Origin(path.name, digest(data))
-    )
+    return read_network(*file_text(path), given, frequency)
 
 
 def parse(
@@ -42,20 +37,33 @@ def parse(
     frequency: str | None = None,
 ) -> Network:
     """The network of a text; `read` statements need the folder that they start from."""
+    return read_network(*given_text(text, name, folder), given, frequency)
+
+
+def file_text(path: str | Path) -> tuple[Text, Path, Origin]:
+    """The text of a file, where it is, and what it is known by."""
+    path = Path(path)
+    data = read_bytes(path)
+    return Text(path.name, decoded(data, path.name)), path, Origin(path.name, digest(data))
+
+
+def given_text(
+    text: str, name: str | None, folder: Path | None
+) -> tuple[Text, Path | None, Origin]:
+    """A text, as a file of that name in the folder would be."""
     origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
-    path = folder / "text" if folder is not None else None
-    return read_network(Text(name or "text", text), path, given, frequency, origin)
+    return Text(name or "text", text), folder / "text" if folder is not None else None, origin
 
 
 def read_network(
     text: Text,
     path: Path | None,
+    origin: Origin,
     given: Mapping[str, str] | None,
     frequency: str | None,
-    origin: Origin,
 ) -> Network:
     """The network of a text, with the means to read it again."""
-    again = partial(_again, text.name, text.text, path, given or {}, frequency, origin)
+    again = partial(_again, text.name, text.text, path, origin, given or {}, frequency)
     return replace(read_text(text, path, given, frequency), origin=origin, again=again)
 
 
@@ -63,12 +71,12 @@ def _again(
     name: str,
     text: str,
     path: Path | None,
+    origin: Origin,
     given: Mapping[str, str],
     frequency: str | None,
-    origin: Origin,
     values: Mapping[str, str],
 ) -> Network:
-    return read_network(Text(name, text), path, {**given, **values}, frequency, origin)
+    return read_network(Text(name, text), path, origin, {**given, **values}, frequency)
 
 
 def read_text(

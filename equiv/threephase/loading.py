@@ -9,8 +9,8 @@ from typing import cast
 
 from equiv import language
 from equiv.errors import Diagnostic, NetworkFileError, UsageError
-from equiv.language.files import Text, decoded, digest, read_bytes
-from equiv.language.loading import read_network
+from equiv.language.files import Text
+from equiv.language.loading import file_text, given_text, read_network
 from equiv.language.words import comment_start
 from equiv.network import Network, Origin
 from equiv.threephase.model import OneLine, three_phase_only
@@ -29,10 +29,7 @@ def load(
     `given` replaces values of the file's parameters, `frequency` its frequency. Raises
     `FileAccessError`, `NetworkFileError` with every mistake in the file, or `UsageError`.
     """
-    path = Path(path)
-    data = read_bytes(path)
-    text = Text(path.name, decoded(data, path.name))
-    return _read(text, path, given, frequency, Origin(path.name, digest(data)))
+    return _read(*file_text(path), given, frequency)
 
 
 def parse(
@@ -47,9 +44,7 @@ def parse(
 
     `read` statements need the folder that they start from.
     """
-    origin = Origin(name, digest(text.encode("utf-8", "surrogatepass")))
-    path = folder / "text" if folder is not None else None
-    return _read(Text(name or "text", text), path, given, frequency, origin)
+    return _read(*given_text(text, name, folder), given, frequency)
 
 
 def write(network: Network | OneLine) -> str:
@@ -83,14 +78,14 @@ def _hinted(diagnostic: Diagnostic) -> Diagnostic:
 def _read(
     text: Text,
     path: Path | None,
+    origin: Origin,
     given: Mapping[str, str] | None,
     frequency: str | None,
-    origin: Origin,
 ) -> Network:
     """What a text describes."""
     if not says_three_phase(text.text):
         try:
-            return read_network(text, path, given, frequency, origin)
+            return read_network(text, path, origin, given, frequency)
         except NetworkFileError as error:
             raise NetworkFileError(tuple(map(_hinted, error.diagnostics))) from None
     from equiv.threephase.language.reader import read_system

@@ -2,17 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from itertools import islice
-from typing import TYPE_CHECKING, TypeVar
+from typing import TYPE_CHECKING
 
-from equiv.errors import NetworkFileError, UsageError
-from equiv.language.assembly import require_known
+from equiv.language.assembly import attempt, parameters, raise_mistakes, require_known
 from equiv.language.limits import MOST_ERRORS
-from equiv.language.mistakes import AlreadyReported, Mistake
+from equiv.language.mistakes import Mistake
 from equiv.language.scope import Scope
-from equiv.language.words import Statement
-from equiv.network import Given
 from equiv.threephase.declaring import Kind
 from equiv.threephase.entered import Entered
 from equiv.threephase.kinds.transformer import Transformer
@@ -27,7 +24,6 @@ from equiv.threephase.words import level_words
 if TYPE_CHECKING:
     from equiv.threephase.language.reader import SystemReader
 
-_T = TypeVar("_T")
 MOST_TOLERANCE = 0.10
 
 
@@ -42,9 +38,7 @@ def assembled(reader: SystemReader) -> OneLine:
     buses = _buses(reader, scope)
     drafts, items = _items(reader, scope, buses, base.real if base else None)
     _check_whole(reader, drafts, items)
-    if reader.reports:
-        kind = UsageError if reader.reports.of_arguments else NetworkFileError
-        raise kind(reader.reports.diagnostics())
+    raise_mistakes(reader)
     title = reader.once.get("title")
     assert frequency is not None
     return OneLine(
@@ -55,22 +49,9 @@ def assembled(reader: SystemReader) -> OneLine:
         notes=tuple(reader.notes),
         base=base.real if base else 100e6,
         prefault=prefault.real if prefault else 1.0,
-        given={
-            name: Given(scope.known[name].value, scope.known[name].unit)
-            for name in reader.top.definitions
-        },
+        given=parameters(reader, scope),
         places={d.name: (d.statement.file, d.statement.line) for d in drafts.values()},
     )
-
-
-def _attempt(work: Callable[[], _T], statement: Statement, reader: SystemReader) -> _T | None:
-    try:
-        return work()
-    except Mistake as mistake:
-        reader.reports.add(mistake, statement)
-    except AlreadyReported:
-        pass
-    return None
 
 
 def _said(reader: SystemReader, name: str, scope: Scope) -> Entered | None:
@@ -78,7 +59,7 @@ def _said(reader: SystemReader, name: str, scope: Scope) -> Entered | None:
     said = reader.said.get(name)
     if said is None:
         return None
-    return _attempt(lambda: _known(said.value, scope), said.statement, reader)
+    return attempt(lambda: _known(said.value, scope), said.statement, reader)
 
 
 def _known(value: Entered | LaterEntered, scope: Scope) -> Entered:
@@ -91,22 +72,24 @@ def _buses(reader: SystemReader, scope: Scope) -> dict[str, Bus]:
     first: dict[str, BusDraft] = {}
     for draft in reader.buses:
         if draft.name in first:
-            other = first[draft.name]
-            mistake = Mistake(
-                "name-taken",
-                f"there is already a bus called {draft.name}",
-                draft.places["name"],
-                related=((other.statement.span(other.places["name"]), "first used here"),),
-            )
-            reader.reports.add(mistake, draft.statement)
+            reader.reports.add(_taken("a bus", draft, first[draft.name]), draft.statement)
             continue
         first[draft.name] = draft
-        bus = _attempt(lambda d=draft: _bus(d, scope), draft.statement, reader)  # type: ignore[misc]
+        bus = attempt(lambda d=draft: _bus(d, scope), draft.statement, reader)  # type: ignore[misc]
         if bus is not None:
             buses[draft.name] = bus
         else:
             reader.doubtful.add(draft.name)
     return buses
+
+
+def _taken(what: str, draft: BusDraft | Draft, first: BusDraft | Draft) -> Mistake:
+    return Mistake(
+        "name-taken",
+        f"there is already {what} called {draft.name}",
+        draft.places["name"],
+        related=((first.statement.span(first.places["name"]), "first used here"),),
+    )
 
 
 def _bus(draft: BusDraft, scope: Scope) -> Bus:
@@ -130,15 +113,9 @@ def _items(
     for draft in reader.drafts:
         first = drafts.setdefault(draft.name, draft)
         if first is not draft:
-            mistake = Mistake(
-                "name-taken",
-                f"there is already an item called {draft.name}",
-                draft.places["name"],
-                related=((first.statement.span(first.places["name"]), "first used here"),),
-            )
-            reader.reports.add(mistake, draft.statement)
+            reader.reports.add(_taken("an item", draft, first), draft.statement)
         elif _has_its_buses(draft, buses, reader):
-            item = _attempt(lambda d=draft: d.realise(scope, buses, base), draft.statement, reader)  # type: ignore[misc]
+            item = attempt(lambda d=draft: d.realise(scope, buses, base), draft.statement, reader)  # type: ignore[misc]
             if item is not None:
                 items[draft.name] = item
     return drafts, items
