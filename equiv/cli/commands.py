@@ -10,7 +10,7 @@ import equiv
 from equiv.cli import completion, fault_options, port_files
 from equiv.cli import formula_options as formulas
 from equiv.cli import port_options as options
-from equiv.cli.options import Exactly, shared
+from equiv.cli.options import By, Exactly, shared
 from equiv.cli.run import Run
 
 if TYPE_CHECKING:
@@ -113,9 +113,7 @@ def superpose(
     paths: Annotated[
         bool, typer.Option("--paths", help="Split each term by the controlled source it takes.")
     ] = False,
-    by: Annotated[
-        Literal["source", "group"], typer.Option(help="A term for each source or each group.")
-    ] = "source",
+    by: By = "source",
     check: Annotated[
         Literal["auto", "all", "none"],
         typer.Option(help="Which terms are found again by a second method."),

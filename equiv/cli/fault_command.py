@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 import equiv
 from equiv.cli import fault_options as options
 from equiv.cli.commands import File, app
-from equiv.cli.options import shared
+from equiv.cli.options import By, shared
 from equiv.cli.run import Run
 
 if TYPE_CHECKING:
@@ -27,7 +27,7 @@ def fault(
     basis: options.Basis = "superposition",
     case: options.Case = "max",
     branches: options.Branches = None,
-    by: options.By = "source",
+    by: By = "source",
 ) -> Result:
     """Three-phase faults: currents, and each source's share.
 

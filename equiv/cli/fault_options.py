@@ -20,7 +20,7 @@ Buses = Annotated[
     ),
 ]
 Type = Annotated[
-    Literal["three-phase", "line-ground", "line-line", "line-line-ground", "all"],
+    Literal[OneType, "all"],
     typer.Option(
         metavar="TYPE", help="three-phase, line-ground, line-line, line-line-ground or all."
     ),
@@ -63,9 +63,6 @@ Branches = Annotated[
         help="Where a relay is: a branch, at its first bus, or NAME@BUS; may repeat.",
         autocompletion=completion.branches,
     ),
-]
-By = Annotated[
-    Literal["source", "group"], typer.Option(help="A term for each source or each group.")
 ]
 
 OneBus = Annotated[

@@ -18,6 +18,9 @@ if TYPE_CHECKING:
     from equiv.analyses.result import Result
 
 Form = Literal["table", "json", "csv", "markdown", "latex"]
+By = Annotated[
+    Literal["source", "group"], typer.Option(help="A term for each source or each group.")
+]
 Exactly = Annotated[
     bool,
     typer.Option("--exact", help="Rational arithmetic: fractions beside decimals, checks are 0."),

@@ -6,6 +6,7 @@ import random
 from pathlib import Path
 
 import pytest
+from diagnostics.damage import damaged
 from diagnostics.systems import CASES
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -82,18 +83,7 @@ def test_any_value(text: str) -> None:
 @given(st.integers(0, 10**9))
 @settings(derandomize=True, max_examples=300, deadline=None)
 def test_damaged_files(seed: int) -> None:
-    chooser = random.Random(seed)
-    text = chooser.choice(SEEDS)
-    for _ in range(chooser.randint(1, 4)):
-        start = chooser.randrange(len(text) + 1)
-        stop = min(len(text), start + chooser.choice([0, 0, 1, 1, 5, 40]))
-        other = chooser.choice(SEEDS)
-        cut = chooser.randrange(len(other) + 1)
-        put = chooser.choice(
-            ["", chooser.choice(WORDS), f" {chooser.choice(WORDS)} ", other[cut : cut + 30]]
-        )
-        text = text[:start] + put + text[stop:]
-    survives(text)
+    survives(damaged(seed, SEEDS, WORDS, 4))
 
 
 def test_some_of_the_damaged_files_are_still_systems() -> None:

@@ -1,10 +1,10 @@
 """Every error code of the language: what brings it about, and the whole of what is said."""
 
-import ast
 from pathlib import Path
 
 import pytest
 from diagnostics.cases import CASES, SMALLER_LIMITS, message, names
+from diagnostics.codes import codes_in
 
 import equiv.language
 
@@ -29,14 +29,4 @@ def test_every_case_has_its_message() -> None:
 
 def _codes() -> set[str]:
     """The codes that are written anywhere in the package."""
-    found = set()
-    for path in Path(equiv.language.__file__).parent.glob("*.py"):
-        for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
-            if isinstance(node, ast.Call) and getattr(node.func, "id", "") in (
-                "Mistake",
-                "Diagnostic",
-            ):
-                first = node.args[0]
-                if isinstance(first, ast.Constant):
-                    found.add(first.value)
-    return found
+    return codes_in(Path(equiv.language.__file__).parent.glob("*.py"))

@@ -1,9 +1,9 @@
 """Every error code of three-phase files: what brings it about, and the whole of what is said."""
 
-import ast
 from pathlib import Path
 
 import pytest
+from diagnostics.codes import codes_in
 from diagnostics.systems import CASES, SMALLER_LIMITS, message, names
 
 import equiv.threephase.language
@@ -31,16 +31,5 @@ def test_every_case_has_its_message() -> None:
 
 def _codes() -> set[str]:
     """The codes that are written where three-phase files are read."""
-    found = set()
     beside = [PACKAGE.parent / f"{name}.py" for name in ("loops", "ratios", "loading")]
-    for path in (*PACKAGE.glob("*.py"), *(PACKAGE.parent / "kinds").glob("*.py"), *beside):
-        for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
-            if isinstance(node, ast.Call) and getattr(node.func, "id", "") in (
-                "Mistake",
-                "Diagnostic",
-                "Problem",
-            ):
-                first = node.args[0]
-                if isinstance(first, ast.Constant):
-                    found.add(str(first.value))
-    return found
+    return codes_in((*PACKAGE.glob("*.py"), *(PACKAGE.parent / "kinds").glob("*.py"), *beside))
