@@ -143,6 +143,11 @@ def scale(number: Number, power: int) -> Number:
     return as_rounded(scaled) if isinstance(number, Rounded) else scaled
 
 
+def is_exact(value: object) -> bool:
+    """Whether a number is one of the exact ones (`equations.exact`)."""
+    return hasattr(value, "exact")
+
+
 def exact(number: Fraction) -> Number:
     """A fraction as the decimal number that it is; the fraction itself where there is none."""
     rest, twos, fives = number.denominator, 0, 0

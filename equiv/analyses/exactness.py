@@ -6,8 +6,8 @@ from collections.abc import Iterable
 from dataclasses import replace
 
 from equiv.analyses.tables import LONGEST_SHOWN, Cell, Column, Fractions, Row
-from equiv.equations.scalars import is_exact
 from equiv.network import Network
+from equiv.units import is_exact
 
 _REMARK = (
     "Exact: rational arithmetic from the text on, the checks too; shares and ratios of magnitudes "

@@ -7,9 +7,9 @@ from dataclasses import dataclass
 from typing import Any, ClassVar, NamedTuple
 
 from equiv.analyses.tables import Table
-from equiv.equations.scalars import is_exact
 from equiv.errors import ExitStatus
 from equiv.network import Network
+from equiv.units import is_exact
 
 PROGRAM = "equiv 0.1.0"
 

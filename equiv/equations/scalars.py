@@ -11,12 +11,7 @@ import numpy as np
 
 from equiv.equations.arithmetic import Numbers
 from equiv.network import Network
-from equiv.units import Rectangular, Value, exact
-
-
-def is_exact(value: Any) -> bool:
-    """Whether a number is one of the exact ones (`equations.exact`)."""
-    return hasattr(value, "exact")
+from equiv.units import Rectangular, Value, exact, is_exact
 
 
 def scalar(value: Any) -> complex:

@@ -7,9 +7,9 @@ from typing import Any, NamedTuple
 
 from equiv.analyses.ports.proof import Equivalent
 from equiv.elements.element import Frequency
-from equiv.equations.scalars import is_exact, scalar
+from equiv.equations.scalars import scalar
 from equiv.language.loads import Load
-from equiv.units import say
+from equiv.units import is_exact, say
 
 _ZERO = 1e-12
 """What is this small against its own parts is a zero that rounding has blurred."""

@@ -10,12 +10,12 @@ from equiv.analyses.loading.points import Line, Point
 from equiv.elements import KINDS, Element
 from equiv.elements.element import Frequency, Options
 from equiv.elements.quantity import Quantity
-from equiv.equations.scalars import is_exact, scalar, written
+from equiv.equations.scalars import scalar, written
 from equiv.equations.solution import Solver, State
 from equiv.errors import EquivError
 from equiv.language.loads import Load
 from equiv.network import Network, Port
-from equiv.units import Value
+from equiv.units import Value, is_exact
 
 _NOISE = 1e-12
 _FLOOR = 1e-6

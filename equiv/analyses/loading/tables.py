@@ -12,8 +12,9 @@ from equiv.analyses.loading.state import LoadState, LoadTotal, PortLoads, larges
 from equiv.analyses.result import Check, finite, pair
 from equiv.analyses.superposition.terms import limit_of
 from equiv.analyses.tables import Cell, Column, Measure, Row, Table
-from equiv.equations.scalars import is_exact, scalar
+from equiv.equations.scalars import scalar
 from equiv.network import Network, Port
+from equiv.units import is_exact
 
 EFFICIENCY = (
     "Efficiency: power taken by the load over the power of the independent sources that deliver, "

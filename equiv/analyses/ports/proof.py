@@ -13,9 +13,10 @@ from equiv.elements import KINDS, Element
 from equiv.elements.element import Frequency, Options
 from equiv.elements.quantity import Quantity
 from equiv.equations.layout import Numbers, arithmetic_of
-from equiv.equations.scalars import in_floats, is_exact, like, scalar, solved, written
+from equiv.equations.scalars import in_floats, like, scalar, solved, written
 from equiv.equations.solution import Solver
 from equiv.network import Network, Port
+from equiv.units import is_exact
 
 DC_LOADS = (0.5, 2.0, 7.0, 0.3, 11.0, 3.0)
 AC_LOADS = (0.5 + 0.0j, 1.5 - 1.0j, 2.0 + 3.0j, 0.3 + 0.4j, 5.0 - 2.0j, 1.1 + 0.7j)

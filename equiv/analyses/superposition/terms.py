@@ -11,8 +11,9 @@ from typing import Any
 from equiv.analyses.result import pair
 from equiv.elements.element import Frequency
 from equiv.elements.quantity import Quantity
-from equiv.equations.scalars import is_exact, scalar, zero_like
+from equiv.equations.scalars import scalar, zero_like
 from equiv.network import Network
+from equiv.units import is_exact
 
 CLOSURE_LIMIT = 1e-9
 """How far the sum may be from all sources at once, relative to Σ|term|."""

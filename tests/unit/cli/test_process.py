@@ -119,6 +119,17 @@ def test_nothing_heavy_is_imported_at_start(statement: str):
     assert done.stdout == b"[]\n"
 
 
+@pytest.mark.parametrize("command", ["kinds", "sample"])
+def test_pages_without_numbers_import_no_numpy(command: str):
+    """They calculate nothing, and numpy is half of their time."""
+    code = (
+        f"import sys; sys.argv = ['equiv', {command!r}]\nfrom equiv.cli import main\n"
+        "try:\n    main()\nfinally:\n    print('numpy' in sys.modules, file=sys.stderr)"
+    )
+    done = subprocess.run([sys.executable, "-c", code], cwd=PROJECT, capture_output=True)
+    assert done.stderr.split()[-1] == b"False"
+
+
 def test_columns_are_honoured(monkeypatch: pytest.MonkeyPatch):
     monkeypatch.setenv("COLUMNS", "57")
     assert of_process().width == 57
