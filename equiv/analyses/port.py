@@ -11,7 +11,7 @@ from equiv.analyses.closing import closing_table
 from equiv.analyses.exactness import exactly
 from equiv.analyses.formulas.kinds import require_plain, require_symbolic
 from equiv.analyses.headings import at_words
-from equiv.analyses.ports.cautions import resistance_cautions
+from equiv.analyses.ports.cautions import TERMINALS_ALONE, resistance_cautions
 from equiv.analyses.ports.choice import chosen_ports
 from equiv.analyses.ports.choice import find_port as find_port
 from equiv.analyses.ports.equivalent import equivalent as equivalent
@@ -66,11 +66,7 @@ class PortEquivalent(Result):
             tables = [t for e, form in pairs for t in form_tables(self.network, e, form)]
         else:
             tables = [t for e in self.equivalents for t in port_tables(self.network, e)]
-        remark = (
-            "An equivalent stands for the terminals alone: losses and efficiency inside it are "
-            "not those of the network."
-        )
-        return (*tables, closing_table(self.network, self.checks, self.cautions, remark))
+        return (*tables, closing_table(self.network, self.checks, self.cautions, TERMINALS_ALONE))
 
     def data(self) -> dict[str, Any]:
         """The `result` of the JSON object; `frequencies` holds all of them where there are several."""

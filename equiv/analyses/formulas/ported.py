@@ -17,6 +17,7 @@ from equiv.analyses.formulas.ports import PortFormulas, port_formulas
 from equiv.analyses.formulas.proof import of_failing
 from equiv.analyses.formulas.told import Failing, InS, failing, in_s
 from equiv.analyses.formulas.wanted import Wanted, symbol_of
+from equiv.analyses.ports.cautions import TERMINALS_ALONE
 from equiv.analyses.result import Check, Result
 from equiv.analyses.tables import Table
 from equiv.elements.element import Frequency
@@ -54,13 +55,9 @@ class FormulaPort(Result):
         )
         if self.slopes is not None:
             tables.append(self.slopes.table())
-        remark = (
-            "An equivalent stands for the terminals alone: losses and efficiency inside it are "
-            "not those of the network."
-        )
         return (
             *tables,
-            closing_table(self.network, self.checks, self.cautions, *self.legend, remark),
+            closing_table(self.network, self.checks, self.cautions, *self.legend, TERMINALS_ALONE),
         )
 
     def data(self) -> dict[str, Any]:

@@ -1,9 +1,14 @@
-"""What is to be told of a port's own resistance."""
+"""What is to be told of any equivalent, and of a port's own resistance."""
 
 from __future__ import annotations
 
 from equiv.analyses.ports.proof import Equivalent
 from equiv.analyses.result import Caution
+
+TERMINALS_ALONE = (
+    "An equivalent stands for the terminals alone: losses and efficiency inside it are not those "
+    "of the network."
+)
 
 
 def resistance_cautions(e: Equivalent) -> list[Caution]:
